@@ -111,7 +111,6 @@ export class Quotes1000000000004 implements MigrationInterface {
       CREATE TABLE link_codes (
         id uuid PRIMARY KEY DEFAULT gen_random_uuid(),
         link_id uuid NOT NULL REFERENCES quote_links,
-        code_hash bytea NOT NULL,
         expires_at timestamptz NOT NULL,
         attempts integer NOT NULL DEFAULT 0,
         used_at timestamptz,
