@@ -1,4 +1,6 @@
 /** Two worlds: the server side in Node, the screens in jsdom. `npm test` runs both; a path runs one file. */
+const { existsSync } = require('node:fs');
+const { join } = require('node:path');
 const server = (displayName, testMatch, extra = {}) => ({
   displayName,
   testEnvironment: 'node',
@@ -18,6 +20,6 @@ module.exports = {
     server('e2e', ['<rootDir>/test/e2e/**/*.spec.ts'], {
       setupFiles: ['<rootDir>/test/support/require-servers.ts'],
     }),
-    '<rootDir>/ui/jest.config.cjs',
+    ...(existsSync(join(__dirname, 'ui/jest.config.cjs')) ? ['<rootDir>/ui/jest.config.cjs'] : []),
   ],
 };
