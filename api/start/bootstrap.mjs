@@ -1,0 +1,72 @@
+// The door of `npm start`, `npm test` and `npm run prove`. It runs before node_modules exists, so it and
+// the .mjs files beside it use Node's own modules only; the rest is compiled TypeScript, loaded when built.
+import { createRequire } from 'node:module';
+import { join } from 'node:path';
+import { fileURLToPath } from 'node:url';
+import { buildServer } from './builds.mjs';
+import { prepareDataFolder } from './data-folder.mjs';
+import { ensureDebianPackages, withoutGivenServers } from './debian-packages.mjs';
+import { acquireLock } from './lock.mjs';
+import { checkNodeVersion, ensureNodePackages } from './node-packages.mjs';
+import { Refusal } from './refusal.mjs';
+
+/** What each command needs of Debian; what is missing is installed where that is allowed. */
+const DEBIAN = {
+  start: { required: ['postgresql'], wished: ['redis-server'] },
+  test: { required: ['postgresql', 'redis-server', 'chromium', 'python3-scipy'], wished: [] },
+  prove: { required: ['debootstrap', 'git'], wished: [] },
+};
+
+const root = fileURLToPath(new URL('../..', import.meta.url)).replace(/\/$/, '');
+const [command = '', ...args] = process.argv.slice(2);
+const say = (/** @type {string} */ text) => void process.stdout.write(`${text}\n`);
+
+const stop = new AbortController();
+for (const name of /** @type {const} */ (['SIGINT', 'SIGTERM', 'SIGHUP'])) {
+  process.on(name, () => {
+    // A terminal and npm may both pass on the same Ctrl-C: the first one stops, the others change nothing.
+    if (!stop.signal.aborted) say('\nStopping …');
+    stop.abort(new Refusal('Stopped before it was up.'));
+  });
+}
+
+/** Installs and builds under a lock, so that two commands at once in one checkout do not tread on each other. */
+async function prepare(/** @type {import('./context').BootstrapContext} */ context) {
+  const lock = await acquireLock(join(context.dataDir, 'prepare.lock'), {
+    signal: stop.signal,
+    onWait: () => say('Another command is preparing this checkout; waiting for it.'),
+  });
+  try {
+    const wanted = DEBIAN[/** @type {keyof typeof DEBIAN} */ (command)];
+    await ensureDebianPackages(context, command === 'start' ? withoutGivenServers(wanted, process.env) : wanted);
+    await ensureNodePackages(context);
+    await buildServer(context);
+  } finally {
+    lock.release();
+  }
+}
+
+async function main() {
+  if (!(command in DEBIAN)) throw new Refusal('Say what to do: npm start, npm test or npm run prove.');
+  checkNodeVersion(process.versions.node);
+  const context = { root, dataDir: prepareDataFolder(root), args, say, signal: stop.signal };
+  const own = command === 'start' ? await acquireLock(join(context.dataDir, 'running.lock')) : null;
+  try {
+    await prepare(context);
+    const { run } = createRequire(import.meta.url)(join(root, 'dist/server/api/start', `${command}.js`));
+    return await run(context, own);
+  } finally {
+    own?.release();
+  }
+}
+
+try {
+  process.exitCode = await main();
+} catch (error) {
+  // A refusal is said in words; anything else is our own fault and is shown whole.
+  if (error instanceof Error && error.name === 'Refusal') process.stderr.write(`${error.message}\n`);
+  else if (!stop.signal.aborted) console.error(error);
+  process.exitCode = stop.signal.aborted ? 130 : 1;
+}
+// Handles that a library may have left open must not keep a command alive that has stopped what it started.
+process.exit();
