@@ -3,10 +3,10 @@
 import { createRequire } from 'node:module';
 import { join } from 'node:path';
 import { fileURLToPath } from 'node:url';
-import { buildServer } from './builds.mjs';
+import { BUILDS, buildServer, ensureBuild } from './builds.mjs';
 import { prepareDataFolder } from './data-folder.mjs';
 import { ensureDebianPackages, withoutGivenServers } from './debian-packages.mjs';
-import { acquireLock } from './lock.mjs';
+import { acquireLock, holderOf } from './lock.mjs';
 import { checkNodeVersion, ensureNodePackages } from './node-packages.mjs';
 import { Refusal } from './refusal.mjs';
 
@@ -41,6 +41,8 @@ async function prepare(/** @type {import('./context').BootstrapContext} */ conte
     await ensureDebianPackages(context, command === 'start' ? withoutGivenServers(wanted, process.env) : wanted);
     await ensureNodePackages(context);
     await buildServer(context);
+    // Tests build the screens as a step of their own, so that a fault there does not hide all others.
+    if (command === 'start') await context.buildScreens();
   } finally {
     lock.release();
   }
@@ -49,7 +51,8 @@ async function prepare(/** @type {import('./context').BootstrapContext} */ conte
 async function main() {
   if (!(command in DEBIAN)) throw new Refusal('Say what to do: npm start, npm test or npm run prove.');
   checkNodeVersion(process.versions.node);
-  const context = { root, dataDir: prepareDataFolder(root), args, say, signal: stop.signal };
+  const base = { root, dataDir: prepareDataFolder(root), args, say, signal: stop.signal };
+  const context = { ...base, buildScreens: () => ensureBuild(base, BUILDS.ui), acquireLock, holderOf };
   const own = command === 'start' ? await acquireLock(join(context.dataDir, 'running.lock')) : null;
   try {
     await prepare(context);
@@ -66,6 +69,7 @@ try {
   // A refusal is said in words; anything else is our own fault and is shown whole.
   if (error instanceof Error && error.name === 'Refusal') process.stderr.write(`${error.message}\n`);
   else if (!stop.signal.aborted) console.error(error);
+  if (command === 'test') say('0 passed, 1 failed');
   process.exitCode = stop.signal.aborted ? 130 : 1;
 }
 // Handles that a library may have left open must not keep a command alive that has stopped what it started.

@@ -9,6 +9,11 @@ export interface BootstrapContext {
   readonly say: (text: string) => void;
   /** Aborts at the first signal to stop. */
   readonly signal: AbortSignal;
+  /** Builds the screens unless they are fresh; rejects when they do not build. */
+  readonly buildScreens: () => Promise<void>;
+  readonly acquireLock: (path: string) => Promise<RunningLock>;
+  /** Who holds a lock and lives. */
+  readonly holderOf: (path: string) => { readonly pid: number } | null;
 }
 
 /** The lock by which a second start in the same checkout finds the first. */

@@ -38,7 +38,7 @@ export async function startLocalPostgres(plan: LocalServerPlan, database: string
   };
   plan.started.push(await startPostgres(server));
   const admin = adminUrl(server);
-  await ensureRoles(admin, rolePasswords(secrets), { ownerMakesDatabases: throwAway });
+  await ensureRoles(admin, rolePasswords(secrets), { ownerClones: throwAway });
   await ensureDatabase(admin, database);
   return { ...databaseUrls(server.port, rolePasswords(secrets), database), admin };
 }

@@ -32,18 +32,19 @@ export async function onConnection<T>(url: string, work: (client: Client) => Pro
   }
 }
 
-/** Makes the roles, or sets their passwords again. The owner may make databases only where tests clone them. */
-export async function ensureRoles(admin: string, passwords: RolePasswords, rights: { ownerMakesDatabases: boolean }): Promise<void> {
+/** Makes the roles, or sets their passwords again. Only in tests may the owner make databases and end others' sessions on them. */
+export async function ensureRoles(admin: string, passwords: RolePasswords, rights: { ownerClones: boolean }): Promise<void> {
   await onConnection(admin, async (client) => {
     for (const role of Object.keys(ROLES) as (keyof typeof ROLES)[]) {
       const name = ROLES[role];
       const { rowCount } = await client.query('SELECT 1 FROM pg_roles WHERE rolname = $1', [name]);
       if (rowCount === 0) await client.query(`CREATE ROLE ${escapeIdentifier(name)}`);
-      const createdb = role === 'owner' && rights.ownerMakesDatabases ? 'CREATEDB' : 'NOCREATEDB';
+      const createdb = role === 'owner' && rights.ownerClones ? 'CREATEDB' : 'NOCREATEDB';
       await client.query(
         `ALTER ROLE ${escapeIdentifier(name)} LOGIN NOSUPERUSER NOCREATEROLE ${createdb} PASSWORD ${escapeLiteral(passwords[role])}`,
       );
     }
+    if (rights.ownerClones) await client.query(`GRANT pg_signal_backend TO ${ROLES.owner}`);
   });
 }
 
