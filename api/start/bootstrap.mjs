@@ -1,14 +1,14 @@
 // The door of `npm start`, `npm test` and `npm run prove`. It runs before node_modules exists, so it and
-// the .mjs files beside it use Node's own modules only; the rest is compiled TypeScript, loaded when built.
+// the .cjs files beside it use Node's own modules only; the rest is compiled TypeScript, loaded when built.
 import { createRequire } from 'node:module';
 import { join } from 'node:path';
 import { fileURLToPath } from 'node:url';
-import { BUILDS, buildServer, ensureBuild } from './builds.mjs';
-import { prepareDataFolder } from './data-folder.mjs';
-import { ensureDebianPackages, withoutGivenServers } from './debian-packages.mjs';
-import { acquireLock, holderOf } from './lock.mjs';
-import { checkNodeVersion, ensureNodePackages } from './node-packages.mjs';
-import { Refusal } from './refusal.mjs';
+import { BUILDS, buildServer, ensureBuild } from './builds.cjs';
+import { prepareDataFolder } from './data-folder.cjs';
+import { ensureDebianPackages, withoutGivenServers } from './debian-packages.cjs';
+import { acquireLock, holderOf } from './lock.cjs';
+import { checkNodeVersion, ensureNodePackages } from './node-packages.cjs';
+import { Refusal } from './refusal.cjs';
 
 /** What each command needs of Debian; what is missing is installed where that is allowed. */
 const DEBIAN = {
@@ -30,8 +30,14 @@ for (const name of /** @type {const} */ (['SIGINT', 'SIGTERM', 'SIGHUP'])) {
   });
 }
 
+/** Says a refusal and goes on; any other error is passed up, and so is the wish to stop. */
+function sayRefusal(/** @type {unknown} */ error) {
+  if (!(error instanceof Refusal) || stop.signal.aborted) throw error;
+  say(error.message);
+}
+
 /** Installs and builds under a lock, so that two commands at once in one checkout do not tread on each other. */
-async function prepare(/** @type {import('./context').BootstrapContext} */ context) {
+async function prepare(/** @type {import('./context.js').BootstrapContext} */ context) {
   const lock = await acquireLock(join(context.dataDir, 'prepare.lock'), {
     signal: stop.signal,
     onWait: () => say('Another command is preparing this checkout; waiting for it.'),
@@ -40,8 +46,10 @@ async function prepare(/** @type {import('./context').BootstrapContext} */ conte
     const wanted = DEBIAN[/** @type {keyof typeof DEBIAN} */ (command)];
     await ensureDebianPackages(context, command === 'start' ? withoutGivenServers(wanted, process.env) : wanted);
     await ensureNodePackages(context);
-    await buildServer(context);
-    // Tests build the screens as a step of their own, so that a fault there does not hide all others.
+    // Tests go on where types are wrong (the compiler writes its files all the same, and the types are a part of the
+    // tests), and build the screens in their turn: one fault must not hide all others.
+    if (command === 'test') await buildServer(context).catch(sayRefusal);
+    else await buildServer(context);
     if (command === 'start') await context.buildScreens();
   } finally {
     lock.release();
@@ -68,7 +76,7 @@ try {
 } catch (error) {
   // A refusal is said in words; anything else is our own fault and is shown whole.
   if (error instanceof Error && error.name === 'Refusal') process.stderr.write(`${error.message}\n`);
-  else if (!stop.signal.aborted) console.error(error);
+  else if (!stop.signal.aborted) process.stderr.write(`${error instanceof Error ? error.stack : String(error)}\n`);
   if (command === 'test') say('0 passed, 1 failed');
   process.exitCode = stop.signal.aborted ? 130 : 1;
 }

@@ -17,7 +17,7 @@ const program = (name: string, ...args: string[]): TestStep => ({
   needsScreens: false,
 });
 
-const jest = (name: string, needs: { servers?: boolean; screens?: boolean; alone?: boolean } = {}): TestStep => ({
+const jestProject = (name: string, needs: { servers?: boolean; screens?: boolean; alone?: boolean } = {}): TestStep => ({
   name,
   kind: 'jest',
   // Browsers and killed servers want the machine to themselves; the rest runs on as many cores as there are.
@@ -32,11 +32,11 @@ export const STEPS: readonly TestStep[] = [
   program('types', 'node_modules/typescript/bin/tsc', '-p', 'tsconfig.json', '--noEmit'),
   program('types-ui', 'node_modules/typescript/bin/tsc', '-p', 'ui/tsconfig.json', '--noEmit'),
   { name: 'screens', kind: 'screens', args: [], needsServers: false, needsScreens: false },
-  jest('unit'),
-  jest('ui'),
-  jest('server', { servers: true }),
-  jest('faults', { servers: true, alone: true }),
-  jest('e2e', { servers: true, screens: true, alone: true }),
+  jestProject('unit'),
+  jestProject('ui'),
+  jestProject('server', { servers: true }),
+  jestProject('faults', { servers: true, alone: true }),
+  jestProject('e2e', { servers: true, screens: true, alone: true }),
 ];
 
 /**

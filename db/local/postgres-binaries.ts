@@ -33,5 +33,6 @@ export function findPostgres(dataDir: string, candidates: readonly PostgresBinar
   if (found !== undefined) return found;
   if (candidates.length === 0) throw new Error('PostgreSQL’s server programs are not on this machine (Debian: postgresql).');
   const at = candidates.map(({ major }) => major).join(', ');
-  throw new Error(`The data in ${dataDir} was made by PostgreSQL ${wanted}, and only ${at} is installed (Debian: postgresql-${wanted}).`);
+  const made = String(wanted);
+  throw new Error(`The data in ${dataDir} was made by PostgreSQL ${made}, and only ${at} is installed (Debian: postgresql-${made}).`);
 }

@@ -5,7 +5,7 @@ import { promisify } from 'node:util';
 import { Client } from 'pg';
 import { KeptProcess } from './kept-process';
 import { endProcess, leftOverPid, type StopSignals } from './left-over';
-import { LogFile } from './log-file';
+import type { LogFile } from './log-file';
 import { findPostgres } from './postgres-binaries';
 import { serverUser } from './system-user';
 

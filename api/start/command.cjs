@@ -1,5 +1,5 @@
-import { spawn } from 'node:child_process';
-import { Refusal } from './refusal.mjs';
+const { spawn } = require('node:child_process');
+const { Refusal } = require('./refusal.cjs');
 
 /**
  * Runs a program to its end, with its output passed through; aborting ends the program too.
@@ -8,7 +8,7 @@ import { Refusal } from './refusal.mjs';
  * @param {{ cwd?: string, env?: NodeJS.ProcessEnv, signal: AbortSignal }} options
  * @returns {Promise<number>} its exit code
  */
-export function runToEnd(program, args, { cwd, env, signal }) {
+function runToEnd(program, args, { cwd, env, signal }) {
   signal.throwIfAborted();
   return new Promise((resolve, reject) => {
     const child = spawn(program, args, { cwd, env, stdio: ['ignore', 'inherit', 'inherit'] });
@@ -25,3 +25,5 @@ export function runToEnd(program, args, { cwd, env, signal }) {
     });
   });
 }
+
+module.exports = { runToEnd };

@@ -1,7 +1,7 @@
-import { createHash } from 'node:crypto';
-import { accessSync, chmodSync, constants, mkdirSync, realpathSync } from 'node:fs';
-import { join } from 'node:path';
-import { Refusal } from './refusal.mjs';
+const { createHash } = require('node:crypto');
+const { accessSync, chmodSync, constants, mkdirSync, realpathSync } = require('node:fs');
+const { join } = require('node:path');
+const { Refusal } = require('./refusal.cjs');
 
 /**
  * Where a checkout keeps its data. PostgreSQL refuses to run as root and cannot enter root's home, so as root
@@ -9,7 +9,7 @@ import { Refusal } from './refusal.mjs';
  * @param {{ root: string, isRoot: boolean, override?: string | undefined }} where
  * @returns {string} an absolute path
  */
-export function dataFolderOf({ root, isRoot, override }) {
+function dataFolderOf({ root, isRoot, override }) {
   if (override !== undefined && override !== '') return override;
   if (!isRoot) return join(root, '.local');
   return join('/var/lib/leanyear', createHash('sha256').update(root).digest('hex').slice(0, 12));
@@ -20,7 +20,7 @@ export function dataFolderOf({ root, isRoot, override }) {
  * @param {string} root the checkout
  * @returns {string}
  */
-export function prepareDataFolder(root) {
+function prepareDataFolder(root) {
   const folder = dataFolderOf({
     root: realpathSync(root),
     isRoot: process.getuid?.() === 0,
@@ -39,3 +39,5 @@ export function prepareDataFolder(root) {
   }
   return folder;
 }
+
+module.exports = { dataFolderOf, prepareDataFolder };

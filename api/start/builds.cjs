@@ -1,20 +1,20 @@
-import { createHash } from 'node:crypto';
-import { existsSync, mkdirSync, readFileSync, readdirSync, rmSync, statSync, writeFileSync } from 'node:fs';
-import { dirname, join, relative } from 'node:path';
-import { runToEnd } from './command.mjs';
-import { Refusal } from './refusal.mjs';
+const { createHash } = require('node:crypto');
+const { existsSync, mkdirSync, readFileSync, readdirSync, rmSync, statSync, writeFileSync } = require('node:fs');
+const { dirname, join, relative } = require('node:path');
+const { runToEnd } = require('./command.cjs');
+const { Refusal } = require('./refusal.cjs');
 
 /**
  * @typedef {{ name: string, out: string, inputs: string[], skip: RegExp, program: string, args: string[] }} Build
  * @type {Record<'server' | 'ui', Build>}
  */
-export const BUILDS = {
+const BUILDS = {
   server: {
     name: 'server',
     out: 'dist/server',
     inputs: ['api', 'db', 'worker', 'fixtures', 'tsconfig.json', 'tsconfig.build.json', 'package-lock.json'],
     // Sample files of fixtures/ are read where they lie; only code is compiled.
-    skip: /\.spec\.ts$|\.contract-suite\.ts$|^fixtures\/.*(?<!\.ts|\.json)$|\.mjs$/,
+    skip: /\.spec\.ts$|\.contract-suite\.ts$|^fixtures\/.*(?<!\.ts|\.json)$|\.[cm]js$/,
     program: 'node_modules/typescript/bin/tsc',
     args: ['-p', 'tsconfig.build.json'],
   },
@@ -29,7 +29,7 @@ export const BUILDS = {
 };
 
 /** @param {string} path @returns {string[]} every file below, in one order on every machine */
-export function filesBelow(path) {
+function filesBelow(path) {
   if (!existsSync(path)) return [];
   if (!statSync(path).isDirectory()) return [path];
   return readdirSync(path).filter((name) => name !== 'node_modules').sort().flatMap((name) => filesBelow(join(path, name)));
@@ -40,7 +40,7 @@ export function filesBelow(path) {
  * @param {string} root
  * @param {Build} build
  */
-export function fingerprint(root, build) {
+function fingerprint(root, build) {
   const hash = createHash('sha256');
   for (const file of build.inputs.flatMap((input) => filesBelow(join(root, input)))) {
     const name = relative(root, file);
@@ -53,7 +53,7 @@ export function fingerprint(root, build) {
 const stampOf = (root, build) => join(root, `${build.out}.stamp`);
 
 /** @param {string} root @param {Build} build */
-export function isFresh(root, build) {
+function isFresh(root, build) {
   const stamp = stampOf(root, build);
   return existsSync(join(root, build.out)) && existsSync(stamp) && readFileSync(stamp, 'utf8') === fingerprint(root, build);
 }
@@ -64,7 +64,7 @@ export function isFresh(root, build) {
  * @param {Build} build
  * @throws {Refusal} when it does not build
  */
-export async function ensureBuild({ root, say, signal }, build) {
+async function ensureBuild({ root, say, signal }, build) {
   if (isFresh(root, build)) return;
   say(`Building the ${build.name} …`);
   const print = fingerprint(root, build);
@@ -77,7 +77,7 @@ export async function ensureBuild({ root, say, signal }, build) {
 }
 
 /** Takes away what was compiled from a file that is gone. @param {string} root */
-export function pruneServer(root) {
+function pruneServer(root) {
   const out = join(root, BUILDS.server.out);
   for (const file of filesBelow(out)) {
     const source = join(root, relative(out, file).replace(/\.js(\.map)?$/, '.ts'));
@@ -86,7 +86,9 @@ export function pruneServer(root) {
 }
 
 /** @param {{ root: string, say: (text: string) => void, signal: AbortSignal }} context */
-export async function buildServer(context) {
+async function buildServer(context) {
   await ensureBuild(context, BUILDS.server);
   pruneServer(context.root);
 }
+
+module.exports = { BUILDS, filesBelow, fingerprint, isFresh, ensureBuild, pruneServer, buildServer };

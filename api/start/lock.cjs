@@ -1,13 +1,13 @@
-import { linkSync, readFileSync, rmSync, writeFileSync } from 'node:fs';
-import { setTimeout as sleep } from 'node:timers/promises';
-import { Refusal } from './refusal.mjs';
+const { linkSync, readFileSync, rmSync, writeFileSync } = require('node:fs');
+const { setTimeout: sleep } = require('node:timers/promises');
+const { Refusal } = require('./refusal.cjs');
 
 /**
  * When a process began, in clock ticks since boot: with the id it names one process for good, for ids are reused.
  * @param {number} pid
  * @returns {string | null} null when there is no such process
  */
-export function beganAt(pid) {
+function beganAt(pid) {
   try {
     const stat = readFileSync(`/proc/${pid}/stat`, 'utf8');
     // The name in parentheses may hold spaces; the fields after it do not. Field 22 of all, 20th after the name.
@@ -22,7 +22,7 @@ export function beganAt(pid) {
  * @param {string} path
  * @returns {Holder | null} who holds the lock, or null when nobody alive does
  */
-export function holderOf(path) {
+function holderOf(path) {
   try {
     const holder = /** @type {Holder} */ (JSON.parse(readFileSync(path, 'utf8')));
     return holder.began !== null && beganAt(holder.pid) === holder.began ? holder : null;
@@ -57,7 +57,7 @@ function placeWhole(path, text) {
  * @param {{ signal: AbortSignal, onWait: () => void }} [waiting] to wait for the holder; without it a held lock is refused
  * @throws {Refusal} naming the holder's address, when it is held and nobody waits
  */
-export async function acquireLock(path, waiting) {
+async function acquireLock(path, waiting) {
   const mine = { pid: process.pid, began: beganAt(process.pid) };
   const text = JSON.stringify(mine);
   for (let said = false; ; ) {
@@ -85,3 +85,5 @@ export async function acquireLock(path, waiting) {
     release: () => rmSync(path, { force: true }),
   };
 }
+
+module.exports = { beganAt, holderOf, acquireLock };

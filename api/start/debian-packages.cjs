@@ -1,8 +1,8 @@
-import { spawnSync } from 'node:child_process';
-import { existsSync, mkdirSync, readdirSync, rmSync, writeFileSync } from 'node:fs';
-import { delimiter, dirname, join } from 'node:path';
-import { runToEnd } from './command.mjs';
-import { Refusal } from './refusal.mjs';
+const { spawnSync } = require('node:child_process');
+const { existsSync, mkdirSync, readdirSync, rmSync, writeFileSync } = require('node:fs');
+const { delimiter, dirname, join } = require('node:path');
+const { runToEnd } = require('./command.cjs');
+const { Refusal } = require('./refusal.cjs');
 
 const APT = '/usr/bin/apt-get';
 const CLUSTER_CONFIGURATION = '/etc/postgresql-common/createcluster.conf';
@@ -33,14 +33,14 @@ const PRESENT = /** @type {Record<string, () => boolean>} */ ({
  * @param {{ required: string[], wished: string[] }} wanted
  * @param {NodeJS.ProcessEnv} env
  */
-export function withoutGivenServers(wanted, env) {
+function withoutGivenServers(wanted, env) {
   const given = [env.DATABASE_URL ? 'postgresql' : '', env.REDIS_URL ? 'redis-server' : ''];
   const keep = (/** @type {string[]} */ names) => names.filter((name) => !given.includes(name));
   return { required: keep(wanted.required), wished: keep(wanted.wished) };
 }
 
 /** @param {readonly string[]} names */
-export function installCommand(names) {
+function installCommand(names) {
   return `sudo apt-get update && sudo apt-get install -y --no-install-recommends ${names.join(' ')}`;
 }
 
@@ -64,7 +64,7 @@ function holdBackServices() {
  * @param {{ required: string[], wished: string[] }} wanted what the command cannot do without, and what it would rather have
  * @throws {Refusal} naming the very command to run, when something required stays missing
  */
-export async function ensureDebianPackages({ say, signal }, wanted) {
+async function ensureDebianPackages({ say, signal }, wanted) {
   const missing = () => [...wanted.required, ...wanted.wished].filter((name) => !PRESENT[name]?.());
   const names = missing();
   if (names.length === 0) return;
@@ -101,3 +101,5 @@ async function install(names, say, signal) {
     release();
   }
 }
+
+module.exports = { withoutGivenServers, installCommand, ensureDebianPackages };

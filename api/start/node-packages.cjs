@@ -1,13 +1,13 @@
-import { existsSync, readFileSync } from 'node:fs';
-import { join } from 'node:path';
-import { runToEnd } from './command.mjs';
-import { Refusal } from './refusal.mjs';
+const { existsSync, readFileSync } = require('node:fs');
+const { join } = require('node:path');
+const { runToEnd } = require('./command.cjs');
+const { Refusal } = require('./refusal.cjs');
 
 /**
  * @param {string} version such as 20.19.1
  * @throws {Refusal} unless it is Node 20, from 20.19 on
  */
-export function checkNodeVersion(version) {
+function checkNodeVersion(version) {
   const [major = 0, minor = 0] = version.split('.').map(Number);
   if (major !== 20 || minor < 19) {
     throw new Refusal(`Leanyear runs on Node 20, from 20.19 on; this is Node ${version}.`);
@@ -21,7 +21,7 @@ export function checkNodeVersion(version) {
  * @param {LockFile | null} installed node_modules/.package-lock.json, which npm writes when an install is complete
  * @typedef {{ packages: Record<string, { version?: string, integrity?: string, optional?: boolean, peer?: boolean }> }} LockFile
  */
-export function packagesAreStale(wanted, installed) {
+function packagesAreStale(wanted, installed) {
   if (installed === null) return true;
   return Object.entries(wanted.packages).some(([path, entry]) => {
     if (path === '') return false;
@@ -41,7 +41,7 @@ function readLock(path) {
  * Brings node_modules in line with the lock file.
  * @param {import('./context').BootstrapContext} context
  */
-export async function ensureNodePackages({ root, say, signal }) {
+async function ensureNodePackages({ root, say, signal }) {
   const wanted = readLock(join(root, 'package-lock.json'));
   if (wanted === null) throw new Refusal('package-lock.json is missing: this is not a whole checkout.');
   if (!packagesAreStale(wanted, readLock(join(root, 'node_modules/.package-lock.json')))) return;
@@ -58,3 +58,5 @@ export async function ensureNodePackages({ root, say, signal }) {
       : await runToEnd('npm', args, { cwd: root, env, signal });
   if (code !== 0) throw new Refusal('npm could not install the packages; its own words are above.');
 }
+
+module.exports = { checkNodeVersion, packagesAreStale, ensureNodePackages };
