@@ -3,7 +3,7 @@ import { join } from 'node:path';
 import { once } from 'node:events';
 import type { KeptProcess } from '../../db/local/kept-process';
 import { answersOn, freePort } from '../../db/local/ports';
-import { accountsTable } from './accounts';
+import { accountsTable, readAccounts } from './accounts';
 import type { BootstrapContext, RunningLock } from './context';
 import { startLocalPostgres, startLocalRedis } from './local-servers';
 import { ownProgram, runOwn } from './own-programs';
@@ -59,7 +59,7 @@ export async function run(context: BootstrapContext, lock: RunningLock): Promise
     const address = String(env['LEANYEAR_PUBLIC_URL']);
     lock.publish(address);
     say(`\nLeanyear is at ${address}\n`);
-    if (existsSync(accounts)) say(accountsTable(readFileSync(accounts, 'utf8')));
+    if (existsSync(accounts)) say(accountsTable(readAccounts(readFileSync(accounts, 'utf8'))));
     say(`Logs: ${logDir}   Stop: Ctrl-C`);
     if (!signal.aborted) await once(signal, 'abort');
     return 0;

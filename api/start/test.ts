@@ -27,7 +27,7 @@ function runProgram({ root, signal }: BootstrapContext, args: readonly string[],
 async function runJest(context: BootstrapContext, step: TestStep, folder: string, env: NodeJS.ProcessEnv): Promise<Tally> {
   const report = join(folder, 'report.json');
   rmSync(report, { force: true });
-  const always = ['node_modules/jest/bin/jest.js', '--passWithNoTests', '--json', `--outputFile=${report}`];
+  const always = ['node_modules/jest/bin/jest.js', '--json', `--outputFile=${report}`];
   const code = await runProgram(context, [...always, ...step.args], env);
   const picked = step.args.some((arg) => /^(-t|--testNamePattern)/.test(arg));
   return countJest(existsSync(report) ? readFileSync(report, 'utf8') : null, code, picked);

@@ -77,7 +77,7 @@ describe('the Redis of a test file', () => {
       await Promise.all([one.drop(), other.drop()]);
     }
     const stranger = new Redis(one.url.replace(/:[^:@]+@/, ':wrong@'), { retryStrategy: () => null });
-    const refusal = await new Promise<Error>((resolve) => stranger.once('error', resolve));
+    const refusal = await new Promise<Error>((resolve) => stranger.on('error', resolve));
     stranger.disconnect();
     expect(refusal.message).toMatch(/WRONGPASS/);
   });

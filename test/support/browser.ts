@@ -36,8 +36,8 @@ export async function openBrowser({ viewport = { width: 1440, height: 900 }, col
   const context = await chromium.launchPersistentContext(profile, {
     executablePath: chromiumPath(),
     headless: true,
-    // Chromium's own sandbox cannot be set up by root.
-    chromiumSandbox: process.getuid?.() !== 0,
+    // Chromium cannot set up its sandbox as root, nor in most containers; it sees nothing here but our own pages.
+    chromiumSandbox: false,
     args: [...FLAGS, '--disable-dev-shm-usage'],
     viewport,
     colorScheme,
