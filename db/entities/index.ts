@@ -1,10 +1,27 @@
 import { CapturedMailRow, MailRow } from './mail';
-import type { EntitySchema } from 'typeorm';
+import {
+  AuditEntryRow,
+  BrokerFirmRow,
+  CedantRow,
+  ContactRow,
+  GrantRow,
+  PersonRow,
+  SessionRow,
+  SignInAttemptRow,
+} from './people';
 
 type EntityClass = new () => object;
 
 /** Every mapped table, one line an entity. */
-export const ENTITIES: (EntityClass | EntitySchema)[] = [
-  MailRow,
+export const ENTITIES: EntityClass[] = [
+  AuditEntryRow,
+  BrokerFirmRow,
   CapturedMailRow,
+  CedantRow,
+  ContactRow,
+  GrantRow,
+  MailRow,
+  PersonRow,
+  SessionRow,
+  SignInAttemptRow,
 ];

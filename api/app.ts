@@ -1,0 +1,90 @@
+import { existsSync, mkdirSync } from 'node:fs';
+import { join } from 'node:path';
+import type { Express } from 'express';
+import type { Logger } from 'pino';
+import { auditReader } from '../db/read-models/audit';
+import { deskReader } from '../db/read-models/desk';
+import { postRoom } from '../db/read-models/post-room';
+import { createDataSource } from '../db/data-source';
+import { auditTrail } from '../db/repositories/audit-trail';
+import { firmsRepository } from '../db/repositories/firms';
+import { grantsRepository } from '../db/repositories/grants';
+import { peopleRepository } from '../db/repositories/people';
+import { sessionsRepository, signInAttempts } from '../db/repositories/sessions';
+import { unitOfWork } from '../db/unit-of-work';
+import type { Config } from './config/config';
+import type { RouteSpec } from './contract/route';
+import { ROUTES } from './contract/routes';
+import { registerAudit } from './features/audit/routes';
+import { registerDesk } from './features/desk/routes';
+import { registerHealth } from './features/health/routes';
+import { registerOpenApi } from './features/openapi/routes';
+import { registerPeople } from './features/people/routes';
+import { registerPostRoom } from './features/post-room/routes';
+import { firstPassword, hashPassword } from './features/session/passwords';
+import { registerSession } from './features/session/routes';
+import { authenticator } from './http/authenticate';
+import { httpApp, newRouter } from './http/http-app';
+import type { ApiRouter } from './http/serve';
+import { diskUploads } from './http/uploads';
+
+export interface OpenedApp {
+  readonly express: Express;
+  /** Routes of the contract that no feature has bound. */
+  readonly unbound: readonly string[];
+  close(): Promise<void>;
+}
+
+const SCREENS = join(__dirname, '../../ui/browser');
+
+/** Opens the API: connects to its stores, gives each feature its ports and binds every route. */
+export async function openApp(config: Config, log: Logger): Promise<OpenedApp> {
+  const dataSource = createDataSource(config.DATABASE_URL);
+  await dataSource.initialize();
+  const uploadFolder = join(config.LEANYEAR_DATA_DIR, 'uploads');
+  mkdirSync(uploadFolder, { recursive: true, mode: 0o700 });
+
+  const shared = {
+    people: peopleRepository(dataSource),
+    sessions: sessionsRepository(dataSource),
+    audit: auditTrail,
+    unitOfWork: unitOfWork(dataSource),
+    jwtSecret: config.JWT_SECRET,
+    publicUrl: config.LEANYEAR_PUBLIC_URL,
+  };
+  const router: ApiRouter = {
+    express: newRouter(),
+    authenticate: authenticator(shared),
+    uploads: diskUploads(uploadFolder, config.LEANYEAR_LARGEST_UPLOAD_MB * 1_000_000),
+    checkReplies: config.NODE_ENV !== 'production',
+    bound: new Set<RouteSpec>(),
+  };
+
+  registerSession(router, {
+    ...shared,
+    attempts: signInAttempts(dataSource),
+    demoAccountsFile: config.LEANYEAR_DEMO ? (config.LEANYEAR_DEMO_ACCOUNTS ?? join(config.LEANYEAR_DATA_DIR, 'demo-accounts.json')) : null,
+  });
+  registerPeople(router, {
+    ...shared,
+    firms: firmsRepository(dataSource),
+    grants: grantsRepository(dataSource),
+    firstPassword: async () => {
+      const password = firstPassword();
+      return { password, hash: await hashPassword(password) };
+    },
+  });
+  registerDesk(router, { desk: deskReader(dataSource) });
+  registerAudit(router, { auditReader: auditReader(dataSource) });
+  registerPostRoom(router, { postRoom: postRoom(dataSource, { demo: config.LEANYEAR_DEMO }) });
+
+  const outside = newRouter();
+  registerHealth(outside, { checks: { database: () => dataSource.query('SELECT 1') } });
+  registerOpenApi(router.express, `${config.LEANYEAR_PUBLIC_URL}/api/v1`);
+  const unbound = Object.entries(ROUTES).filter(([, spec]) => !router.bound.has(spec));
+  return {
+    express: httpApp({ config, log, api: router.express, outside, screens: existsSync(SCREENS) ? SCREENS : null }),
+    unbound: unbound.map(([name]) => name),
+    close: () => dataSource.destroy(),
+  };
+}
