@@ -1,3 +1,5 @@
+const { join } = require('node:path');
+
 /** Who may import whom. Each folder names what it may reach; whatever it does not name is forbidden. */
 
 /** A folder and the paths that it alone may import; packages have rules of their own below. */
@@ -108,14 +110,15 @@ module.exports = {
 
     hidden('bullmq', ['bullmq'], ['^api/queue/bullmq[^/]*\\.ts$', '^test/', 'node_modules'], 'One file knows which queue it is.'),
     hidden('nodemailer', ['nodemailer'], ['^worker/mail/smtp[^/]*\\.ts$', 'node_modules'], 'One file knows how mail travels.'),
-    hidden('database-packages', ['typeorm', 'pg', 'pg-copy-streams'], ['^db/', 'node_modules'], 'The ORM stops at the repository.'),
+    hidden('database-packages', ['typeorm', 'pg', 'pg-copy-streams'], ['^db/', '^test/', 'node_modules'], 'The ORM stops at the repository.'),
     hidden('server-packages', ['express', 'multer', 'passport', 'passport-jwt', 'helmet', 'cookie-parser'], ['^api/', '^test/', 'node_modules'], 'HTTP stops at the API.'),
   ],
   options: {
     doNotFollow: { path: 'node_modules' },
     exclude: { path: '^(dist|coverage|\\.angular)/' },
     tsPreCompilationDeps: true,
-    tsConfig: { fileName: 'tsconfig.json' },
+    // The screens have short names for the contract; this file says them from the root, as the cruiser wants them.
+    tsConfig: { fileName: join(__dirname, 'tsconfig.imports.json') },
     enhancedResolveOptions: { exportsFields: ['exports'], conditionNames: ['import', 'require', 'node', 'default', 'types'], extensions: ['.ts', '.js', '.mjs', '.cjs', '.json'] },
   },
 };

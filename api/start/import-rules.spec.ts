@@ -27,6 +27,7 @@ const BROKEN: readonly (readonly [string, string, string])[] = [
   ['worker/mail/b.ts', "import '../jobs/a';", 'mail'],
   ['worker/mail/c.ts', "import 'express';", 'server-packages'],
   ['ui/src/app/a.ts', "import '../../../api/http/a';", 'ui'],
+  ['ui/src/app/f.ts', "import '@leanyear/contract/openapi';", 'no-openapi-in-the-browser'],
   ['ui/src/app/b.ts', "import '../../../worker/engine/a';", 'ui-engine'],
   ['ui/src/app/features/one/a.ts', "import '../two/a';", 'ui-features-apart'],
   ['ui/src/app/shared/a.ts', "import '../features/two/a';", 'ui-shared-below'],
@@ -52,6 +53,7 @@ const SOUND: readonly (readonly [string, string])[] = [
   ['worker/engine/d.ts', "import './a'; import 'jstat';"],
   ['worker/jobs/j.ts', "import '../engine/a'; import '../../api/contract/a';"],
   ['ui/src/app/d.ts', "import type { a } from '../../../worker/engine/a'; import '../../../api/contract/a'; export type A = typeof a;"],
+  ['ui/src/app/e.ts', "import '@leanyear/contract/a';"],
   ['ui/src/app/price.worker.ts', "import '../../../worker/engine/a';"],
   ['test/b.ts', "import '../db/a'; import '../api/http/a';"],
 ];
@@ -69,7 +71,7 @@ describe('the import rules', () => {
       mkdirSync(dirname(join(folder, name)), { recursive: true });
       writeFileSync(join(folder, name), text);
     }
-    for (const name of ['.dependency-cruiser.cjs', 'tsconfig.json', 'package.json']) cpSync(join(ROOT, name), join(folder, name));
+    for (const name of ['.dependency-cruiser.cjs', 'tsconfig.json', 'tsconfig.imports.json', 'package.json']) cpSync(join(ROOT, name), join(folder, name));
     symlinkSync(join(ROOT, 'node_modules'), join(folder, 'node_modules'));
     const cruise = join(ROOT, 'node_modules/dependency-cruiser/bin/dependency-cruise.mjs');
     const args = [cruise, '--config', '.dependency-cruiser.cjs', '--output-type', 'json', 'api', 'db', 'worker', 'ui', 'test'];

@@ -1,6 +1,8 @@
 import { fork, spawn, type ChildProcess } from 'node:child_process';
-import { join } from 'node:path';
+import { writeFileSync } from 'node:fs';
+import { basename, dirname, join } from 'node:path';
 import { KeptProcess } from '../../db/local/kept-process';
+import { endProcess, leftOverProgram } from '../../db/local/left-over';
 import { LogFile } from '../../db/local/log-file';
 
 /** Gives one of our programs the time to finish what it is doing. */
@@ -19,14 +21,25 @@ export interface OwnProgram {
   readonly serves: () => Promise<boolean>;
 }
 
+const pidFileOf = (logDir: string, file: string): string => join(logDir, `${basename(dirname(file))}-${basename(file)}.pid`);
+
+/** Ends what an earlier start, killed, has left: such a program ends by itself, but may still hold its port. */
+export async function endLeftOver(logDir: string, file: string): Promise<void> {
+  const pid = leftOverProgram(pidFileOf(logDir, file), file);
+  if (pid !== null) await endProcess(pid, STOP_SIGNALS);
+}
+
 /**
  * A program of ours, kept running. It is forked with a channel: should we be killed, the channel closes and the
  * program ends itself, so that no API or worker outlives its supervisor.
  */
 export function ownProgram({ name, file, env, logDir, say, serves }: OwnProgram): KeptProcess {
   const log = new LogFile(join(logDir, `${name.toLowerCase()}.log`));
-  const spawnIt = (): ChildProcess =>
-    log.lend((out) => fork(file, { env, detached: true, stdio: ['ignore', out, out, 'ipc'] }));
+  const spawnIt = (): ChildProcess => {
+    const child = log.lend((out) => fork(file, { env, detached: true, stdio: ['ignore', out, out, 'ipc'] }));
+    if (child.pid !== undefined) writeFileSync(pidFileOf(logDir, file), String(child.pid));
+    return child;
+  };
   return new KeptProcess({
     name: `The ${name}`,
     spawn: spawnIt,

@@ -65,6 +65,13 @@ async function proveStart(inside: Inside, person: Person): Promise<Verdict> {
   return { ok: words.endsWith(', signed in') && nothingLeft(result), words: `${words}, ${ending(result)}` };
 }
 
+/** npm start where something is missing that it may not install: it must name the command to run, and start nothing. */
+async function proveRefusal(inside: Inside, person: Person): Promise<Verdict> {
+  const result = await runInside({ ...inside, user: person, cwd: person.checkout, command: 'npm start' });
+  const words = result.lines.find((line) => line.includes('apt-get install')) ?? 'no command was named';
+  return { ok: result.code !== 0 && words.includes('postgresql') && nothingLeft(result), words: `${words.trim()}, ${ending(result)}` };
+}
+
 async function proveTest(inside: Inside, person: Person): Promise<Verdict> {
   const result = await runInside({ ...inside, user: person, cwd: person.checkout, command: '.ci/run' });
   const last = result.lines.filter((line) => line !== '' && !line.startsWith('left running')).at(-1) ?? '';
@@ -97,15 +104,19 @@ export async function run(context: BootstrapContext): Promise<number> {
   };
   try {
     makeTree(tree, say);
-    cloneInto(tree, root, ROOT.checkout);
+    execFileSync('chroot', [tree, 'useradd', '--create-home', '--shell', '/bin/sh', ORDINARY.name], { stdio: 'inherit' });
+    for (const person of [ROOT, ORDINARY]) {
+      cloneInto(tree, root, person.checkout);
+      execFileSync('chroot', [tree, 'chown', '-R', `${person.name}:`, person.checkout], { stdio: 'inherit' });
+    }
+    await step('npm start as an ordinary user, nothing there', () => proveRefusal(inside, ORDINARY));
     await step('npm start as root, nothing there', () => proveStart(inside, ROOT));
     await step('npm start as root, again', () => proveStart(inside, ROOT));
     await step('npm test as root', () => proveTest(inside, ROOT));
-    execFileSync('chroot', [tree, 'useradd', '--create-home', '--shell', '/bin/sh', ORDINARY.name], { stdio: 'inherit' });
-    cloneInto(tree, root, ORDINARY.checkout);
-    execFileSync('chroot', [tree, 'chown', '-R', `${ORDINARY.name}:`, ORDINARY.home], { stdio: 'inherit' });
     await step('npm start as an ordinary user, the servers there', () => proveStart(inside, ORDINARY));
     await step('npm test as an ordinary user', () => proveTest(inside, ORDINARY));
+    rmSync(join(tree, 'usr/bin/redis-server'));
+    await step('npm start as an ordinary user, without Redis', () => proveStart(inside, ORDINARY));
   } finally {
     removeTree(tree);
   }

@@ -6,7 +6,7 @@ import { answersOn, freePort } from '../../db/local/ports';
 import { accountsTable, readAccounts } from './accounts';
 import type { BootstrapContext, RunningLock } from './context';
 import { startLocalPostgres, startLocalRedis } from './local-servers';
-import { ownProgram, runOwn } from './own-programs';
+import { endLeftOver, ownProgram, runOwn } from './own-programs';
 import { loadSecrets } from './secrets';
 import { serverEnvironment, type Servers } from './server-environment';
 
@@ -31,6 +31,7 @@ export async function run(context: BootstrapContext, lock: RunningLock): Promise
   const logDir = join(dataDir, 'logs');
   mkdirSync(join(dataDir, 'uploads'), { recursive: true, mode: 0o700 });
   try {
+    for (const file of ['api/main.js', 'worker/main.js']) await endLeftOver(logDir, compiled(file));
     const servers = await findServers(context, started);
     signal.throwIfAborted();
     const wanted = process.env['PORT'];

@@ -27,6 +27,16 @@ export function leftOverPid(pidFile: string, folder: string): number | null {
   }
 }
 
+/** A program of ours that still runs though whoever started it was killed: its id is on file and it runs this file. */
+export function leftOverProgram(pidFile: string, program: string): number | null {
+  try {
+    const pid = Number.parseInt(readFileSync(pidFile, 'utf8'), 10);
+    return readFileSync(`/proc/${pid}/cmdline`, 'utf8').split('\0').includes(program) ? pid : null;
+  } catch {
+    return null;
+  }
+}
+
 /** Signals in turn, each with the milliseconds it is given to work. */
 export type StopSignals = readonly (readonly [NodeJS.Signals, number])[];
 
