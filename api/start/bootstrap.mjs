@@ -71,12 +71,19 @@ async function main() {
   }
 }
 
+/** What we throw ourselves says in words what is wrong and what to do; anything else is a fault and is shown whole. */
+function isWorded(/** @type {unknown} */ error) {
+  return error instanceof Error && ['Error', 'Refusal'].includes(error.name) && !('code' in error);
+}
+
+function inWords(/** @type {any} */ error) {
+  return isWorded(error) ? error.message : (error?.stack ?? String(error));
+}
+
 try {
   process.exitCode = await main();
 } catch (error) {
-  // A refusal is said in words; anything else is our own fault and is shown whole.
-  if (error instanceof Error && error.name === 'Refusal') process.stderr.write(`${error.message}\n`);
-  else if (!stop.signal.aborted) process.stderr.write(`${error instanceof Error ? error.stack : String(error)}\n`);
+  if (!stop.signal.aborted || isWorded(error)) process.stderr.write(`${inWords(error)}\n`);
   if (command === 'test') say('0 passed, 1 failed');
   process.exitCode = stop.signal.aborted ? 130 : 1;
 }

@@ -14,6 +14,7 @@ async function findServers(context: BootstrapContext, started: KeptProcess[]): P
   const { say, dataDir } = context;
   const { DATABASE_URL, DATABASE_OWNER_URL, SEALER_DATABASE_URL, REDIS_URL } = process.env;
   const plan = { dataDir, secrets: loadSecrets(dataDir), say, started };
+  if (!DATABASE_URL || !REDIS_URL) say('Starting the servers …');
   const given = DATABASE_URL ? { application: DATABASE_URL, owner: DATABASE_OWNER_URL, sealer: SEALER_DATABASE_URL } : null;
   const [database, redis] = await Promise.all([
     given ?? startLocalPostgres(plan, 'leanyear'),
