@@ -1,0 +1,28 @@
+import { provideHttpClient, withFetch, withInterceptors } from '@angular/common/http';
+import { ErrorHandler, LOCALE_ID, provideBrowserGlobalErrorListeners, type ApplicationConfig } from '@angular/core';
+import { MAT_FORM_FIELD_DEFAULT_OPTIONS, type MatFormFieldDefaultOptions } from '@angular/material/form-field';
+import { provideRouter, TitleStrategy, withComponentInputBinding, withInMemoryScrolling, withRouterConfig } from '@angular/router';
+import { DeskErrorHandler } from './core/error-handler';
+import { expiredSignIn, ownRequest, problems } from './core/interceptors';
+import { DeskTitle } from './core/title';
+import { routes } from './routes';
+
+// Dense fields keep their labels only when outlined.
+const fields: MatFormFieldDefaultOptions = { appearance: 'outline', subscriptSizing: 'dynamic', floatLabel: 'auto' };
+
+export const appConfig: ApplicationConfig = {
+  providers: [
+    provideBrowserGlobalErrorListeners(),
+    { provide: ErrorHandler, useClass: DeskErrorHandler },
+    { provide: TitleStrategy, useExisting: DeskTitle },
+    { provide: LOCALE_ID, useValue: 'en' },
+    { provide: MAT_FORM_FIELD_DEFAULT_OPTIONS, useValue: fields },
+    provideHttpClient(withFetch(), withInterceptors([problems, expiredSignIn, ownRequest])),
+    provideRouter(
+      routes,
+      withComponentInputBinding(),
+      withInMemoryScrolling({ scrollPositionRestoration: 'enabled', anchorScrolling: 'enabled' }),
+      withRouterConfig({ onSameUrlNavigation: 'reload', paramsInheritanceStrategy: 'always' }),
+    ),
+  ],
+};
