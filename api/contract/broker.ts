@@ -1,4 +1,4 @@
-import { z } from 'zod';
+import * as z from 'zod';
 import { QUOTE_KINDS, QUOTE_STATES } from '../domain/vocabulary';
 import { id, idParams, note, reason } from './common';
 import { orderLayer } from './quotes';

@@ -1,4 +1,4 @@
-import { z } from 'zod';
+import * as z from 'zod';
 import { CATALOGUE_STATES } from '../domain/vocabulary';
 import { id, idParams, name, note, page, pageOf, personRef, reason } from './common';
 import { route } from './route';

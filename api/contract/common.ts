@@ -1,4 +1,4 @@
-import { z } from 'zod';
+import * as z from 'zod';
 
 export const id = z.uuid();
 export const idParams = z.object({ id });

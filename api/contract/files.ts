@@ -1,4 +1,4 @@
-import { z } from 'zod';
+import * as z from 'zod';
 
 /** One fault of an uploaded file, at its place. Lines count from 1, the header being line 1. */
 export const fileProblem = z.object({

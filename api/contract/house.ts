@@ -1,4 +1,4 @@
-import { z } from 'zod';
+import * as z from 'zod';
 import { BASIS_STATES, MAIL_KINDS, MAIL_STATES } from '../domain/vocabulary';
 import { id, idParams, page, pageOf, personRef } from './common';
 import { route } from './route';

@@ -1,4 +1,4 @@
-import { z } from 'zod';
+import * as z from 'zod';
 import { ROLES } from '../domain/vocabulary';
 import { amountText, email, id, idParams, isoDate, name, share } from './common';
 import { route } from './route';

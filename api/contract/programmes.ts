@@ -1,4 +1,4 @@
-import { z } from 'zod';
+import * as z from 'zod';
 import { amountText, currency, id, idParams, isoDate, name, positiveAmountText, share } from './common';
 import { route } from './route';
 

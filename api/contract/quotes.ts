@@ -1,4 +1,4 @@
-import { z } from 'zod';
+import * as z from 'zod';
 import { AUTHORITY_RULES, QUOTE_KINDS, QUOTE_MOVES, QUOTE_STATES, RUN_STANDINGS } from '../domain/vocabulary';
 import { id, idParams, isoDate, note, personRef, positiveAmountText, reason, share } from './common';
 import { programmeTerms } from './programmes';

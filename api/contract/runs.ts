@@ -1,4 +1,4 @@
-import { z } from 'zod';
+import * as z from 'zod';
 import { RUN_STANDINGS, RUN_STATES } from '../domain/vocabulary';
 import { id, idParams, personRef } from './common';
 import { programmeTerms } from './programmes';

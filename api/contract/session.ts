@@ -1,4 +1,4 @@
-import { z } from 'zod';
+import * as z from 'zod';
 import { PERMISSIONS, ROLES } from '../domain/vocabulary';
 import { email, id } from './common';
 import { route } from './route';

@@ -1,4 +1,4 @@
-import { z } from 'zod';
+import * as z from 'zod';
 import { SUBMISSION_STATES } from '../domain/vocabulary';
 import { currency, id, idParams, isoDate, name, note, page, pageOf, personRef } from './common';
 import { route } from './route';
