@@ -89,6 +89,8 @@ export default tseslint.config(
     extends: [...angular.configs.tsRecommended],
     processor: angular.processInlineTemplates,
     rules: {
+      // Angular's validators are static methods that are handed over by name.
+      '@typescript-eslint/unbound-method': 'off',
       '@angular-eslint/component-class-suffix': 'off',
       '@angular-eslint/directive-class-suffix': 'off',
       '@angular-eslint/prefer-on-push-component-change-detection': 'error',

@@ -92,8 +92,10 @@ async function install(names, say, signal) {
   const env = { ...process.env, DEBIAN_FRONTEND: 'noninteractive', LC_ALL: 'C.UTF-8' };
   const release = holdBackServices();
   try {
+    // An installation that was cut short before is finished first; apt would refuse to go on.
+    await runToEnd('/usr/bin/dpkg', ['--configure', '-a'], { env, signal });
     if ((await runToEnd(APT, ['-qq', 'update'], { env, signal })) !== 0) say('apt-get update failed; trying with the lists at hand.');
-    const options = ['-qq', '-o', 'Dpkg::Use-Pty=0', '-o', 'Dpkg::Options::=--force-confold', '--no-install-recommends'];
+    const options = ['-qq', '-o', 'Dpkg::Use-Pty=0', '-o', 'DPkg::Lock::Timeout=120', '-o', 'Dpkg::Options::=--force-confold', '--no-install-recommends'];
     const code = await runToEnd(APT, [...options, '-y', 'install', ...names], { env, signal });
     // One by one where they do not go together, so that an absent Redis does not cost the database as well.
     if (code !== 0) for (const name of names) await runToEnd(APT, [...options, '-y', 'install', name], { env, signal });
