@@ -25,8 +25,8 @@ import { firstPassword, hashPassword } from './features/session/passwords';
 import { registerSession } from './features/session/routes';
 import { authenticator } from './http/authenticate';
 import { httpApp, newRouter } from './http/http-app';
-import type { ApiRouter } from './http/serve';
-import { diskUploads } from './http/uploads';
+import { refuseOtherMethods, type ApiRouter } from './http/serve';
+import { clearLeftUploads, diskUploads } from './http/uploads';
 
 export interface OpenedApp {
   readonly express: Express;
@@ -43,6 +43,7 @@ export async function openApp(config: Config, log: Logger): Promise<OpenedApp> {
   await dataSource.initialize();
   const uploadFolder = join(config.LEANYEAR_DATA_DIR, 'uploads');
   mkdirSync(uploadFolder, { recursive: true, mode: 0o700 });
+  await clearLeftUploads(uploadFolder, 3600);
 
   const shared = {
     people: peopleRepository(dataSource),
@@ -56,7 +57,6 @@ export async function openApp(config: Config, log: Logger): Promise<OpenedApp> {
     express: newRouter(),
     authenticate: authenticator(shared),
     uploads: diskUploads(uploadFolder, config.LEANYEAR_LARGEST_UPLOAD_MB * 1_000_000),
-    checkReplies: config.NODE_ENV !== 'production',
     bound: new Set<RouteSpec>(),
   };
 
@@ -77,6 +77,8 @@ export async function openApp(config: Config, log: Logger): Promise<OpenedApp> {
   registerDesk(router, { desk: deskReader(dataSource) });
   registerAudit(router, { auditReader: auditReader(dataSource) });
   registerPostRoom(router, { postRoom: postRoom(dataSource, { demo: config.LEANYEAR_DEMO }) });
+
+  refuseOtherMethods(router);
 
   const outside = newRouter();
   registerHealth(outside, { checks: { database: () => dataSource.query('SELECT 1') } });

@@ -24,7 +24,9 @@ const environment = z.object({
   LEANYEAR_WORKER_THREADS: z.coerce.number().int().min(1).max(64).optional(),
   /** Requests a minute from one address. */
   LEANYEAR_RATE_LIMIT: z.coerce.number().int().positive().default(1200),
-  /** Attempts at signing in a minute from one address. */
+  /** Proxies in front that may say whom they answer for; 0 where clients come directly. */
+  LEANYEAR_TRUSTED_PROXIES: z.coerce.number().int().min(0).max(10).default(0),
+  /** Attempts at signing in, and acts on signed links, a minute from one address. */
   LEANYEAR_SIGN_IN_LIMIT: z.coerce.number().int().positive().default(30),
   JWT_SECRET: z.string().min(32),
   LINK_SECRET: z.string().min(32),

@@ -20,6 +20,7 @@ const TITLES: Readonly<Record<number, string>> = {
   401: 'Not signed in',
   403: 'Not allowed',
   404: 'Not found',
+  405: 'Not this way',
   409: 'Refused',
   412: 'Changed meanwhile',
   413: 'Too large',
@@ -32,6 +33,20 @@ const TITLES: Readonly<Record<number, string>> = {
 
 function problemOf(status: number, detail?: string, members: object = {}): Problem {
   return { type: 'about:blank', title: TITLES[status] ?? 'Error', status, ...(detail ? { detail } : {}), ...members };
+}
+
+const PARSER_WORDS: Readonly<Record<number, string>> = {
+  400: 'The body is not valid JSON, or the address is not valid.',
+  413: 'The request is larger than allowed.',
+  415: 'The body has an encoding or character set that is not read here; send UTF-8.',
+};
+
+/** What express's own parsers throw carries a status and is named by a type, or is a fault of the address. */
+function parserStatus(error: unknown): 400 | 413 | 415 | null {
+  if (!(error instanceof Error) || !('status' in error)) return null;
+  if (!('type' in error) && !(error instanceof URIError)) return null;
+  const { status } = error;
+  return status === 400 || status === 413 || status === 415 ? status : null;
 }
 
 /**
@@ -47,11 +62,8 @@ export function userProblem(error: unknown): { readonly problem: Problem; readon
   if (error instanceof InvalidInput) return plain(problemOf(422, undefined, { errors: error.errors }));
   if (error instanceof Forbidden) return plain(problemOf(403, error.message));
   if (error instanceof ChangedMeanwhile) return plain(problemOf(412, error.message));
-  // What express's own parsers throw: a status of 4xx and a type.
-  if (error instanceof Error && 'status' in error && typeof error.status === 'number' && error.status >= 400 && error.status < 500) {
-    return plain(problemOf(error.status, error.status === 413 ? 'The request is larger than allowed.' : 'The body is not valid JSON.'));
-  }
-  return null;
+  const parser = parserStatus(error);
+  return parser === null ? null : plain(problemOf(parser, PARSER_WORDS[parser]));
 }
 
 export function ourProblem(errorId: string): Problem {

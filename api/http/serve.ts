@@ -1,9 +1,9 @@
 import type { NextFunction, Request, RequestHandler, Response, Router } from 'express';
-import { z, type ZodType } from 'zod';
 import type { BodyOf, ParamsOf, QueryOf, ReplyOf, RouteSpec } from '../contract/route';
 import type { Actor } from '../domain/shared/actor';
-import { Forbidden, InvalidInput, NotFound } from '../domain/shared/errors';
+import { Forbidden } from '../domain/shared/errors';
 import { HttpProblem } from './problem';
+import { parseBodyAndQuery, parseParams, readJson, keyOf, versionRead } from './request-parts';
 import type { UploadedFile, Uploads } from './uploads';
 
 /** The router with what every route needs, and a note of the routes it has bound. */
@@ -12,8 +12,6 @@ export interface ApiRouter {
   /** Establishes who asks, or null for nobody. Throws where the credential is no good. */
   readonly authenticate: (req: Request, res: Response) => Promise<Actor | null>;
   readonly uploads: Uploads;
-  /** Parses replies too, so that a reply outside its contract is found before a client finds it. */
-  readonly checkReplies: boolean;
   readonly bound: Set<RouteSpec>;
 }
 
@@ -37,49 +35,14 @@ export interface Call<R extends RouteSpec> {
 /** A handler answers the reply. With entity tags the reply's own `version` becomes the tag. */
 export type Handler<R extends RouteSpec> = (call: Call<R>) => Promise<ReplyOf<R>> | ReplyOf<R>;
 
-function faultsOf(error: z.ZodError, prefix: string): { path: string; message: string }[] {
-  return error.issues.map((issue) => ({ path: [prefix, ...issue.path.map(String)].filter(Boolean).join('.'), message: issue.message }));
-}
-
-/** Parses the parts of the request and reports the faults of all of them at once. */
-function parseParts(spec: RouteSpec, req: Request): { params: unknown; query: unknown; body: unknown } {
-  const params = spec.params?.safeParse(req.params);
-  // An id of another shape names nothing.
-  if (params && !params.success) throw new NotFound('thing');
-  const query = spec.query?.safeParse(req.query);
-  const body = spec.body?.safeParse(req.body ?? {});
-  const errors = [
-    ...(query && !query.success ? faultsOf(query.error, 'query') : []),
-    ...(body && !body.success ? faultsOf(body.error, '') : []),
-  ];
-  if (errors.length > 0) throw new InvalidInput(errors);
-  return { params: params?.data, query: query?.data, body: body?.data };
-}
-
-function versionRead(spec: RouteSpec, req: Request): number {
-  if (spec.edits !== 'if-match') return 0;
-  const match = /^(?:W\/)?"(\d{1,9})"$/.exec(req.get('if-match') ?? '');
-  if (match === null) {
-    throw new HttpProblem(428, 'Say which version you read', 'Send the entity tag that you read in If-Match, so that nobody overwrites another.');
-  }
-  return Number(match[1]);
-}
-
-function keyOf(req: Request): string | null {
-  const key = req.get('idempotency-key') ?? null;
-  if (key !== null && !/^[\w-]{8,100}$/.test(key)) {
-    throw new InvalidInput([{ path: 'Idempotency-Key', message: 'must have 8 to 100 letters, digits, hyphens or underscores' }]);
-  }
-  return key;
-}
-
-function answer(spec: RouteSpec, router: ApiRouter, res: Response, reply: unknown): void {
+/** Every reply goes through its schema, so that nothing leaves which the contract does not name, and a wrong one is found. */
+function answer(spec: RouteSpec, res: Response, reply: unknown): void {
   if (spec.form === 'stream' || spec.form === 'bytes') return;
   if (spec.reply === undefined) {
     res.status(spec.status ?? 204).end();
     return;
   }
-  const checked: unknown = router.checkReplies ? (spec.reply as ZodType).parse(reply) : reply;
+  const checked: unknown = spec.reply.parse(reply);
   if (spec.edits !== undefined && typeof reply === 'object' && reply !== null && 'version' in reply) {
     res.setHeader('ETag', `"${String(reply.version)}"`);
   }
@@ -95,8 +58,8 @@ function allow(spec: RouteSpec, actor: Actor | null): void {
 }
 
 /**
- * Binds a route of the contract to its handler. In this order: who asks, whether they may, then the request's parts
- * against the route's schemas, then the handler.
+ * Binds a route of the contract to its handler. In this order: who asks, whether they may, only then is a body read, its
+ * parts against the route's schemas, then the handler.
  */
 export function serve<R extends RouteSpec>(router: ApiRouter, spec: R, handler: Handler<R>): void {
   if (router.bound.has(spec)) throw new Error(`${spec.method} ${spec.path} is bound twice`);
@@ -104,12 +67,14 @@ export function serve<R extends RouteSpec>(router: ApiRouter, spec: R, handler: 
   const handle = async (req: Request, res: Response): Promise<void> => {
     const actor = spec.access === 'public' || spec.access === 'link' ? null : await router.authenticate(req, res);
     allow(spec, actor);
+    const params = parseParams(spec, req);
     const ifMatch = versionRead(spec, req);
+    const idempotencyKey = keyOf(req);
+    if (spec.body !== undefined && spec.form !== 'file') await readJson(req, res);
     const file = spec.form === 'file' ? await router.uploads.receive(req, res) : null;
     try {
-      const parts = parseParts(spec, req);
-      const call = { actor, ...parts, ifMatch, idempotencyKey: keyOf(req), file, req, res } as unknown as Call<R>;
-      answer(spec, router, res, await handler(call));
+      const call = { actor, params, ...parseBodyAndQuery(spec, req), ifMatch, idempotencyKey, file, req, res } as unknown as Call<R>;
+      answer(spec, res, await handler(call));
     } finally {
       if (file !== null) await file.remove();
     }
@@ -118,4 +83,15 @@ export function serve<R extends RouteSpec>(router: ApiRouter, spec: R, handler: 
     handle(req, res).catch(next);
   };
   router.express[spec.method](spec.path, handled);
+}
+
+/** Answers 405 where a path is ours but not by this method. Bind it after every route. */
+export function refuseOtherMethods(router: ApiRouter): void {
+  const methods = new Map<string, string[]>();
+  for (const { path, method } of router.bound) methods.set(path, [...(methods.get(path) ?? []), method.toUpperCase()]);
+  for (const [path, allowed] of methods) {
+    router.express.all(path, (req, _res, next) => {
+      next(new HttpProblem(405, 'Not this way', `${req.method} is not possible here; ${allowed.join(', ')} is.`, {}, { Allow: allowed.join(', ') }));
+    });
+  }
 }

@@ -8,9 +8,9 @@ const REFRESH = '__Host-leanyear-refresh';
 const accessCookie = { httpOnly: true, secure: true, sameSite: 'lax', path: '/' } as const;
 const refreshCookie = { httpOnly: true, secure: true, sameSite: 'strict', path: '/' } as const;
 
-export function setSessionCookies(res: Response, tokens: { access: string; refresh: string | null }): void {
+export function setSessionCookies(res: Response, tokens: { access: string; refresh: string }): void {
   res.cookie(ACCESS, tokens.access, { ...accessCookie, maxAge: ACCESS_SECONDS * 1000 });
-  if (tokens.refresh !== null) res.cookie(REFRESH, tokens.refresh, { ...refreshCookie, maxAge: IDLE_SECONDS * 1000 });
+  res.cookie(REFRESH, tokens.refresh, { ...refreshCookie, maxAge: IDLE_SECONDS * 1000 });
 }
 
 export function clearSessionCookies(res: Response): void {

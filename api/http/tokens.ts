@@ -1,4 +1,4 @@
-import { createHash, randomBytes } from 'node:crypto';
+import { createHash } from 'node:crypto';
 import { sign } from 'jsonwebtoken';
 
 export const ACCESS_SECONDS = 600;
@@ -20,15 +20,7 @@ export function accessToken(secret: string, session: { id: string; personId: str
   });
 }
 
-export function newRefreshToken(): string {
-  return randomBytes(32).toString('base64url');
-}
-
-/** Only the hash of a refresh token is stored; 256 random bits need no slow hash. */
-export function refreshHash(token: string): Buffer {
-  return createHash('sha256').update(token).digest();
-}
-
+/** Names an account in the count of failures without holding its address. */
 export function accountHash(email: string): Buffer {
   return createHash('sha256').update(`account:${email.toLowerCase()}`).digest();
 }

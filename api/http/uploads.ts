@@ -1,5 +1,6 @@
 import { randomUUID } from 'node:crypto';
-import { rm } from 'node:fs/promises';
+import { readdir, rm, stat } from 'node:fs/promises';
+import { join } from 'node:path';
 import type { Request, Response } from 'express';
 import multer, { MulterError } from 'multer';
 import { InvalidInput } from '../domain/shared/errors';
@@ -55,10 +56,19 @@ export function diskUploads(folder: string, largestBytes: number): Uploads {
       if (file === undefined) throw new InvalidInput([{ path: 'file', message: 'must hold a file' }]);
       return {
         path: file.path,
-        originalName: file.originalname.slice(0, 200),
+        originalName: file.originalname.replaceAll(/\p{Cc}/gu, ' ').slice(0, 200),
         bytes: file.size,
         remove: () => rm(file.path, { force: true }),
       };
     },
   };
+}
+
+/** Clears what a process that died left behind: files that no request can still be answering. */
+export async function clearLeftUploads(folder: string, olderThanSeconds: number): Promise<void> {
+  for (const name of await readdir(folder)) {
+    const path = join(folder, name);
+    const { mtimeMs } = await stat(path).catch(() => ({ mtimeMs: Date.now() }));
+    if (mtimeMs < Date.now() - olderThanSeconds * 1000) await rm(path, { force: true });
+  }
 }

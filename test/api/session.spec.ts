@@ -13,6 +13,7 @@ describe('sessions', () => {
     request(api.express).post('/api/v1/session').set('X-Leanyear-Request', '1').send({ email, password });
   /** The cookies are Secure, which a test over plain http sends by hand. */
   const jar = (res: request.Response): string => cookiesOf(res).map((cookie) => cookie.split(';')[0]).join('; ');
+  const refreshOf = (cookies: string): string => /leanyear-refresh=([^;]+)/.exec(cookies)?.[1] ?? 'none';
   const refresh = (cookie: string) =>
     request(api.express).post('/api/v1/session/refresh').set('X-Leanyear-Request', '1').set('Cookie', cookie);
 
@@ -59,12 +60,91 @@ describe('sessions', () => {
     const { email } = await api.person('underwriter');
     const first = jar(await signIn(email).expect(200));
     const second = jar(await refresh(first).expect(200));
-    expect(second).not.toBe(first);
-    await refresh(first).expect(200);
+    expect(refreshOf(second)).not.toBe(refreshOf(first));
+    expect(refreshOf(jar(await refresh(first).expect(200)))).toBe(refreshOf(second));
     await api.owner.query(`UPDATE sessions SET rotated_at = rotated_at - interval '1 minute'`);
     await refresh(first).expect(401);
     await refresh(second).expect(401);
     await request(api.express).get('/api/v1/session').set('Cookie', second).expect(401);
+  });
+
+  it('ends the session also when the old token is shown after several exchanges', async () => {
+    const { email } = await api.person('underwriter');
+    const stolen = jar(await signIn(email).expect(200));
+    let thief = stolen;
+    for (let exchange = 0; exchange < 3; exchange += 1) thief = jar(await refresh(thief).expect(200));
+    await refresh(stolen).expect(401);
+    await refresh(thief).expect(401);
+    const trail = await api.owner.query(`SELECT 1 FROM audit_entries WHERE action LIKE 'session ended%' AND subject_id = (SELECT id::text FROM people WHERE email = $1)`, [email]);
+    expect(trail.rowCount).toBe(1);
+  });
+
+  it('knows no refresh token that it did not make', async () => {
+    const { email } = await api.person('underwriter');
+    const good = refreshOf(jar(await signIn(email).expect(200)));
+    const [session = '', value = '', digest = ''] = good.split('.');
+    for (const forged of ['', 'x', `${session}.${value}`, `${session}.${'A'.repeat(43)}.${digest}`, `${good}.x`]) {
+      await refresh(`__Host-leanyear-refresh=${forged}`).expect(401);
+    }
+    await refresh(`__Host-leanyear-refresh=${good}`).expect(200);
+  });
+
+  it('expires: the access token after ten minutes, the session when idle for twelve hours or after seven days', async () => {
+    const { email } = await api.person('underwriter');
+    const idle = jar(await signIn(email).expect(200));
+    await api.owner.query(`UPDATE sessions SET rotated_at = now() - interval '12 hours 1 second' WHERE ended_at IS NULL`);
+    await refresh(idle).expect(401);
+    const old = jar(await signIn(email).expect(200));
+    await api.owner.query(`UPDATE sessions SET expires_at = now() - interval '1 second'`);
+    await refresh(old).expect(401);
+    await request(api.express).get('/api/v1/session').set('Cookie', old).expect(401);
+    const access = /leanyear-access=([^;]+)/.exec(jar(await signIn(email).expect(200)))?.[1] ?? '';
+    const claims = JSON.parse(Buffer.from(access.split('.')[1] ?? '', 'base64url').toString()) as { iat: number; exp: number; email?: string };
+    expect(claims.exp - claims.iat).toBe(600);
+    expect(Object.keys(claims).sort()).toEqual(['aud', 'exp', 'iat', 'iss', 'sid', 'sub']);
+  });
+
+  it.each([
+    ['no algorithm', (head: string, body: string) => `${Buffer.from('{"alg":"none","typ":"JWT"}').toString('base64url')}.${body}.${head ? 'e30' : ''}`],
+    ['another signature', (head: string, body: string) => `${head}.${body}.${'A'.repeat(43)}`],
+  ])('takes no access token with %s', async (_what, forge) => {
+    const { email } = await api.person('underwriter');
+    const res = await request(api.express).post('/api/v1/tokens').send({ email, password: PASSWORD }).expect(201);
+    const [head = '', body = ''] = (res.body as { accessToken: string }).accessToken.split('.');
+    await request(api.express).get('/api/v1/session').set('Authorization', `Bearer ${forge(head, body)}`).expect(401);
+  });
+
+  it('tries five passwords and no more, however many come at once', async () => {
+    const { email } = await api.person('underwriter');
+    const answers = await Promise.all(Array.from({ length: 20 }, () => signIn(email, 'wrong')));
+    expect(answers.map((res) => res.status).sort()).toEqual([...Array<number>(4).fill(401), ...Array<number>(16).fill(429)]);
+    const { rows } = await api.owner.query(
+      `SELECT 1 FROM audit_entries WHERE action = 'sign-in refused' AND subject_id = (SELECT id::text FROM people WHERE email = $1)`,
+      [email],
+    );
+    expect(rows).toHaveLength(5);
+  });
+
+  it('ends the session on sign-out by the refresh cookie alone, when the short one has gone', async () => {
+    const { email } = await api.person('underwriter');
+    const cookie = `__Host-leanyear-refresh=${refreshOf(jar(await signIn(email).expect(200)))}`;
+    await request(api.express).delete('/api/v1/session').set('X-Leanyear-Request', '1').set('Cookie', cookie).expect(204);
+    await refresh(cookie).expect(401);
+  });
+
+  it('signs in, refreshes and ends with bearer tokens', async () => {
+    const { email } = await api.person('actuary');
+    const issued = await request(api.express).post('/api/v1/tokens').send({ email, password: PASSWORD }).expect(201);
+    const { refreshToken } = issued.body as { refreshToken: string };
+    const renewed = await request(api.express).post('/api/v1/tokens/refresh').send({ refreshToken }).expect(200);
+    const bearer = `Bearer ${(renewed.body as { accessToken: string }).accessToken}`;
+    await request(api.express).get('/api/v1/session').set('Authorization', bearer).expect(200);
+    await request(api.express).delete('/api/v1/tokens').set('Authorization', bearer).expect(204);
+    await request(api.express).get('/api/v1/session').set('Authorization', bearer).expect(401);
+  });
+
+  it('shows the demo accounts in demo mode only', async () => {
+    await request(api.express).get('/api/v1/demo/accounts').expect(404);
   });
 
   it('ends the session on sign-out', async () => {

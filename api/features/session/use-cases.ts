@@ -1,3 +1,4 @@
+import { randomUUID } from 'node:crypto';
 import type { AuditTrail } from '../../domain/shared/audit';
 import { permissionsOf, type People, type PersonRecord } from '../../domain/person/person';
 import type { SessionRecord, Sessions, SignInAttempts } from '../../domain/session/session';
@@ -6,7 +7,8 @@ import { InvalidInput } from '../../domain/shared/errors';
 import type { UnitOfWork } from '../../domain/shared/transaction';
 import type { Session } from '../../contract/session';
 import { HttpProblem } from '../../http/problem';
-import { ABSOLUTE_SECONDS, GRACE_SECONDS, IDLE_SECONDS, accessToken, accountHash, newRefreshToken, refreshHash } from '../../http/tokens';
+import { firstRefreshToken, nextRefreshToken, refreshHash, sessionOfRefreshToken } from '../../http/refresh-tokens';
+import { ABSOLUTE_SECONDS, GRACE_SECONDS, IDLE_SECONDS, accessToken, accountHash } from '../../http/tokens';
 import { hashPassword, passwordFault, passwordFits } from './passwords';
 
 export interface SessionDeps {
@@ -21,8 +23,7 @@ export interface SessionDeps {
 export interface OpenedSession {
   readonly view: Session;
   readonly access: string;
-  /** null where the refresh token shown stays the present one. */
-  readonly refresh: string | null;
+  readonly refresh: string;
 }
 
 export function viewOf(person: PersonRecord): Session {
@@ -49,12 +50,11 @@ export async function signInWith(
   client: 'browser' | 'bearer',
 ): Promise<OpenedSession> {
   const account = accountHash(credentials.email);
-  const locked = await deps.attempts.secondsLocked(account);
-  if (locked > 0) throw lockedOut(locked);
+  const attempt = await deps.attempts.begin(account);
+  if (!attempt.allowed) throw lockedOut(attempt.lockSeconds);
   const found = await deps.people.credentialsOf(credentials.email);
   const fits = await passwordFits(found?.passwordHash ?? null, credentials.password);
   if (found === null || !fits || !found.person.active) {
-    const seconds = await deps.attempts.failed(account);
     await deps.unitOfWork.run((transaction) =>
       deps.audit.append(transaction, {
         actorId: null,
@@ -64,10 +64,11 @@ export async function signInWith(
         subjectId: found?.person.id ?? null,
       }),
     );
-    throw seconds > 0 ? lockedOut(seconds) : wrong();
+    throw attempt.lockSeconds > 0 ? lockedOut(attempt.lockSeconds) : wrong();
   }
   await deps.attempts.succeeded(account);
-  const refresh = newRefreshToken();
+  const id = randomUUID();
+  const refresh = firstRefreshToken(deps.jwtSecret, id);
   const session = await deps.unitOfWork.run(async (transaction) => {
     await deps.audit.append(transaction, {
       actorId: found.person.id,
@@ -77,6 +78,7 @@ export async function signInWith(
       subjectId: found.person.id,
     });
     return deps.sessions.open(transaction, {
+      id,
       personId: found.person.id,
       client,
       refreshHash: refreshHash(refresh),
@@ -91,12 +93,13 @@ async function personOf(deps: SessionDeps, session: SessionRecord): Promise<Pers
   return person?.active === true ? person : null;
 }
 
-/** Exchanges a refresh token; showing one that was exchanged long ago ends the session it belongs to. */
+/** Exchanges a refresh token; showing one that was exchanged before, beyond the grace, ends the session it belongs to. */
 export async function refreshWith(deps: SessionDeps, token: string | null): Promise<OpenedSession> {
   const ended = new HttpProblem(401, 'Not signed in', 'The session has ended: sign in again.');
-  if (token === null) throw ended;
-  const next = newRefreshToken();
-  const result = await deps.sessions.rotate(refreshHash(token), refreshHash(next), IDLE_SECONDS, GRACE_SECONDS);
+  const sessionId = token === null ? null : sessionOfRefreshToken(deps.jwtSecret, token);
+  if (token === null || sessionId === null) throw ended;
+  const next = nextRefreshToken(deps.jwtSecret, sessionId, token);
+  const result = await deps.sessions.rotate(sessionId, refreshHash(token), refreshHash(next), IDLE_SECONDS, GRACE_SECONDS);
   if (result.outcome === 'unknown') throw ended;
   if (result.outcome === 'stolen') {
     await deps.unitOfWork.run((transaction) =>
@@ -112,23 +115,25 @@ export async function refreshWith(deps: SessionDeps, token: string | null): Prom
   }
   const person = await personOf(deps, result.session);
   if (person === null) throw ended;
-  return {
-    view: viewOf(person),
-    access: accessToken(deps.jwtSecret, result.session),
-    refresh: result.outcome === 'rotated' ? next : null,
-  };
+  return { view: viewOf(person), access: accessToken(deps.jwtSecret, result.session), refresh: next };
+}
+
+/** Ends the session that a refresh token of ours belongs to, whether or not the short access token still lives. */
+export async function endSessionOf(deps: SessionDeps, token: string | null): Promise<void> {
+  const sessionId = token === null ? null : sessionOfRefreshToken(deps.jwtSecret, token);
+  if (sessionId !== null) await deps.sessions.end(sessionId);
 }
 
 export async function changePasswordOf(deps: SessionDeps, actor: Actor, current: string, next: string): Promise<void> {
   const account = accountHash(actor.email);
-  const locked = await deps.attempts.secondsLocked(account);
-  if (locked > 0) throw lockedOut(locked);
+  const attempt = await deps.attempts.begin(account);
+  if (!attempt.allowed) throw lockedOut(attempt.lockSeconds);
   const found = await deps.people.credentialsOf(actor.email);
   if (found === null || !(await passwordFits(found.passwordHash, current))) {
-    await deps.attempts.failed(account);
     throw new InvalidInput([{ path: 'current', message: 'is not your present password' }]);
   }
-  const fault = passwordFault(next, actor.email);
+  await deps.attempts.succeeded(account);
+  const fault = next === current ? 'must differ from the present one' : passwordFault(next, actor.email);
   if (fault !== null) throw new InvalidInput([{ path: 'next', message: fault }]);
   const hash = await hashPassword(next);
   await deps.unitOfWork.run(async (transaction) => {
