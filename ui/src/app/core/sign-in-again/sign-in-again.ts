@@ -47,7 +47,8 @@ export class SignInAgain {
       });
   }
 
-  protected async signIn(): Promise<void> {
+  protected async signIn(event: Event): Promise<void> {
+    event.preventDefault();
     const person = this.person();
     if (person === null || this.busy()) return;
     if (this.password.invalid) {
