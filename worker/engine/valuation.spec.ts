@@ -1,0 +1,96 @@
+import { joinBlocks, prepare, valueBlock, type BlockResult, type Valuation, type ValuationInputs } from '.';
+import { inventedInputs, inventedLayer } from './testing/invented';
+
+const value = (inputs: ValuationInputs): Valuation => {
+  const prepared = prepare(inputs);
+  return joinBlocks(prepared, Array.from({ length: prepared.blocks }, (_unused, index) => valueBlock(prepared, index)));
+};
+const bytes = (valuation: Valuation): string =>
+  JSON.stringify({ ...valuation, series: [valuation.series.capital, ...valuation.series.payoffs].map((array) => Buffer.from(array.buffer).toString('base64').slice(0, 4000)) });
+
+const inputs = inventedInputs({ events: 2000, states: 40_000, contracts: 6, layers: 4 });
+/** A house small enough for the book to hurt. */
+const lean: ValuationInputs = { ...inputs, basis: { ...inputs.basis, capital: 25, attritionalAndOutward: 0 } };
+const valuation = value(lean);
+
+describe('a valuation', () => {
+  it('has the same bytes however its blocks were shared out', () => {
+    const prepared = prepare(structuredClone(lean));
+    const blocks: BlockResult[] = [];
+    for (const index of [2, 0, 1]) blocks[index] = structuredClone(valueBlock(prepared, index));
+    expect(bytes(joinBlocks(prepare(lean), blocks))).toBe(bytes(valuation));
+  });
+
+  it('splits every premium into steps that add up to it', () => {
+    for (const { split } of valuation.layers) {
+      const marginal =
+        split.risklessLoss + split.leanLoad + split.lossAdjustment + split.fixedExpense + split.brokerageAndExpense + split.reinstatementValue;
+      expect(Math.abs(marginal / split.marginalPremium - 1)).toBeLessThan(1e-12);
+      const technical = split.marginalPremium + split.lineSizeLoad + split.margin + split.minimumTopUp;
+      expect(Math.abs(technical / split.technicalPremium - 1)).toBeLessThan(1e-12);
+    }
+  });
+
+  it('loads remote layers more than working ones where the book suffers from the same events', () => {
+    const { tables, layers } = lean.programme;
+    const book = [{ tables, toHouseCurrency: 1, layers: layers.map((layer) => ({ ...layer, line: 0.4, premium: 0.3 })) }];
+    const loads = value({ ...lean, book }).layers.map(({ split }) => split.leanLoad / split.risklessLoss);
+    expect([...loads].sort((a, b) => a - b)).toEqual(loads);
+    expect(loads[3]).toBeGreaterThan(2 * (loads[0] ?? 0));
+  });
+
+  it('prices the programme so that its parts add up, above the sum of stand-alone walk-aways', () => {
+    const standAlone = valuation.layers.reduce((sum, layer) => sum + 0.1 * layer.walkAwayPremium.value, 0);
+    const parts = valuation.layers.reduce((sum, layer) => sum + 0.1 * layer.programmeWalkAwayPart, 0);
+    expect(Math.abs(parts / valuation.programme.walkAwayPremium - 1)).toBeLessThan(1e-12);
+    expect(parts).toBeGreaterThan(standAlone);
+  });
+
+  it('asks more for a larger line, and the marginal premium for a vanishing one', () => {
+    const basis = { ...lean.basis, fixedExpensePerContract: 0 };
+    const at = (line: number) =>
+      value({ ...lean, basis, programme: { ...lean.programme, layers: [inventedLayer('only', 6, 8, { line })] } }).layers[0]?.walkAwayPremium.value ?? 0;
+    const small = value({ ...lean, basis, programme: { ...lean.programme, layers: [inventedLayer('only', 6, 8, { line: 1e-7 })] } }).layers[0];
+    expect(Math.abs((small?.walkAwayPremium.value ?? 0) / (small?.marginalPremium.value ?? 1) - 1)).toBeLessThan(1e-6);
+    expect(at(0.3)).toBeGreaterThan(at(0.1));
+    expect(at(0.1)).toBeGreaterThan(small?.walkAwayPremium.value ?? 0);
+  });
+
+  it('agrees with the exact means before annual terms', () => {
+    expect(valuation.selfCheck.flagged).toBe(false);
+    expect(valuation.layers.map((layer) => layer.selfCheckErrors)).not.toContain(null);
+    expect(Math.abs(valuation.selfCheck.groundUp ?? 9)).toBeLessThan(4);
+  });
+
+  it('anchors a sure unit, and finds the riskless rate that a stated discount implies', () => {
+    expect(valuation.house.sureValue).toBeCloseTo(1 / 1.03, 12);
+    const stated = value({ ...lean, basis: { ...lean.basis, discounting: { mode: 'stated', discountFactor: 0.9 } } });
+    expect(1 / stated.house.sureValue - 1).toBeCloseTo(stated.house.risklessRate, 10);
+  });
+
+  it('draws a lens whose areas are the price and the expected loss', () => {
+    valuation.layers.forEach((layer, l) => {
+      const limit = lean.programme.layers[l]?.limit ?? 1;
+      const area = (of: 'product' | 'plain'): number =>
+        valuation.lens.reduce((sum, bin, b) => sum + (bin[of][l] ?? 0) * (b === 0 ? Math.log(10) / 12 : Math.log(bin.shareTo / bin.shareFrom)), 0);
+      expect(area('plain')).toBeCloseTo(layer.expectedLoss.value / limit, 10);
+      expect(area('product')).toBeCloseTo((layer.split.risklessLoss + layer.split.leanLoad) / valuation.house.sureValue / limit, 10);
+    });
+  });
+
+  it('is not moved by leaving a layer that nothing reaches', () => {
+    const basis = { ...lean.basis, fixedExpensePerContract: 0 };
+    const before = value({ ...lean, basis });
+    const dry = value({ ...lean, basis, programme: { ...lean.programme, layers: [...lean.programme.layers, inventedLayer('dry', 10, 1e9)] } });
+    expect(dry.layers[4]).toMatchObject({ multiple: null, effectiveStates: 0, technicalRateOnLine: 0.01 });
+    expect(dry.layers[0]?.walkAwayPremium).toEqual(before.layers[0]?.walkAwayPremium);
+    expect(JSON.stringify(dry)).not.toContain('NaN');
+  });
+
+  it.each([
+    [{ ...lean, basis: { ...lean.basis, capital: 0 } }, /capital above 0/],
+    [{ ...lean, grid: { ...lean.grid, states: 10 } }, /1,000 to 10,000,000/],
+    [{ ...lean, catalogues: [] }, /rests on a catalogue/],
+    [{ ...lean, programme: { ...lean.programme, layers: [inventedLayer('x', 0, 1)] } }, /limit must be above 0/],
+  ])('refuses what cannot be priced, in words', (bad, words) => expect(() => prepare(bad)).toThrow(words));
+});
