@@ -1,4 +1,5 @@
 import type { Problem } from '../contract/common';
+import { FileRefused } from '../domain/files/file-problems';
 import { ChangedMeanwhile, Forbidden, InvalidInput, NotFound, Refused } from '../domain/shared/errors';
 
 /** A fault of the request itself, with the status that says so. */
@@ -59,6 +60,7 @@ export function userProblem(error: unknown): { readonly problem: Problem; readon
   }
   if (error instanceof NotFound) return plain(problemOf(404, error.message));
   if (error instanceof Refused) return plain(problemOf(409, error.message, { reasons: error.reasons }));
+  if (error instanceof FileRefused) return plain({ ...problemOf(422, error.message, { report: error.report }), title: 'The file was refused' });
   if (error instanceof InvalidInput) return plain(problemOf(422, undefined, { errors: error.errors }));
   if (error instanceof Forbidden) return plain(problemOf(403, error.message));
   if (error instanceof ChangedMeanwhile) return plain(problemOf(412, error.message));

@@ -1,3 +1,4 @@
+import { CatalogueRow, CatalogueVersionRow, LossTableRow, LossTableVersionRow, SubmissionRow } from './data';
 import { CapturedMailRow, MailRow } from './mail';
 import {
   AuditEntryRow,
@@ -17,11 +18,16 @@ export const ENTITIES: EntityClass[] = [
   AuditEntryRow,
   BrokerFirmRow,
   CapturedMailRow,
+  CatalogueRow,
+  CatalogueVersionRow,
   CedantRow,
   ContactRow,
   GrantRow,
+  LossTableRow,
+  LossTableVersionRow,
   MailRow,
   PersonRow,
   SessionRow,
   SignInAttemptRow,
+  SubmissionRow,
 ];
