@@ -3,19 +3,25 @@ import { join } from 'node:path';
 import type { Express } from 'express';
 import type { Logger } from 'pino';
 import { auditReader } from '../db/read-models/audit';
+import { catalogueReader } from '../db/read-models/catalogues';
 import { deskReader } from '../db/read-models/desk';
 import { postRoom } from '../db/read-models/post-room';
+import { submissionReader } from '../db/read-models/submissions';
 import { createDataSource } from '../db/data-source';
 import { auditTrail } from '../db/repositories/audit-trail';
+import { cataloguesRepository } from '../db/repositories/catalogues';
 import { firmsRepository } from '../db/repositories/firms';
 import { grantsRepository } from '../db/repositories/grants';
+import { lossTablesRepository } from '../db/repositories/loss-tables';
 import { peopleRepository } from '../db/repositories/people';
 import { sessionsRepository, signInAttempts } from '../db/repositories/sessions';
+import { submissionsRepository } from '../db/repositories/submissions';
 import { unitOfWork } from '../db/unit-of-work';
 import type { Config } from './config/config';
 import type { RouteSpec } from './contract/route';
 import { ROUTES } from './contract/routes';
 import { registerAudit } from './features/audit/routes';
+import { registerCatalogues } from './features/catalogues/routes';
 import { registerDesk } from './features/desk/routes';
 import { registerHealth } from './features/health/routes';
 import { registerOpenApi } from './features/openapi/routes';
@@ -23,10 +29,12 @@ import { registerPeople } from './features/people/routes';
 import { registerPostRoom } from './features/post-room/routes';
 import { firstPassword, hashPassword } from './features/session/passwords';
 import { registerSession } from './features/session/routes';
+import { registerSubmissions } from './features/submissions/routes';
 import { authenticator } from './http/authenticate';
 import { httpApp, newRouter } from './http/http-app';
 import { refuseOtherMethods, type ApiRouter } from './http/serve';
 import { clearLeftUploads, diskUploads } from './http/uploads';
+import { memoryNotices } from './queue/memory-notices';
 
 export interface OpenedApp {
   readonly express: Express;
@@ -73,6 +81,17 @@ export async function openApp(config: Config, log: Logger): Promise<OpenedApp> {
       const password = firstPassword();
       return { password, hash: await hashPassword(password) };
     },
+  });
+  const notices = memoryNotices();
+  const catalogues = cataloguesRepository(dataSource);
+  registerCatalogues(router, { ...shared, catalogues, notices, reader: catalogueReader(dataSource), fourEyes: config.LEANYEAR_FOUR_EYES });
+  registerSubmissions(router, {
+    ...shared,
+    catalogues,
+    notices,
+    submissions: submissionsRepository(dataSource),
+    lossTables: lossTablesRepository,
+    reader: submissionReader(dataSource),
   });
   registerDesk(router, { desk: deskReader(dataSource) });
   registerAudit(router, { auditReader: auditReader(dataSource) });
