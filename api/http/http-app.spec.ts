@@ -1,4 +1,6 @@
 import { mkdtempSync, mkdirSync, readdirSync, rmSync, utimesSync, writeFileSync } from 'node:fs';
+import { createServer } from 'node:http';
+import { connect, type AddressInfo } from 'node:net';
 import { tmpdir } from 'node:os';
 import { join } from 'node:path';
 import type { Express } from 'express';
@@ -189,6 +191,22 @@ describe('the HTTP layer', () => {
     await send().attach('file', Buffer.from('a'), 'a.csv').attach('file', Buffer.from('b'), 'b.csv').expect(422);
     await as(request(app).post('/api/v1/files')).field('name', '').attach('file', Buffer.from('a'), 'a.csv').expect(422);
     expect(readdirSync(uploads)).toEqual([]);
+  });
+
+  it('keeps nothing of an upload that breaks off, and goes on answering', async () => {
+    const server = createServer(app);
+    await new Promise<void>((resolve) => server.listen(0, '127.0.0.1', resolve));
+    const { port } = server.address() as AddressInfo;
+    const socket = connect(port, '127.0.0.1');
+    const part = '--b\r\nContent-Disposition: form-data; name="file"; filename="a.csv"\r\n\r\nevent,rate';
+    socket.write(`POST /api/v1/files HTTP/1.1\r\nHost: x\r\nAuthorization: Bearer good\r\nContent-Type: multipart/form-data; boundary=b\r\nContent-Length: 900\r\n\r\n${part}`);
+    while (readdirSync(uploads).length === 0) await new Promise((resolve) => setTimeout(resolve, 5));
+    socket.destroy();
+    const until = Date.now() + 3000;
+    while (readdirSync(uploads).length > 0 && Date.now() < until) await new Promise((resolve) => setTimeout(resolve, 5));
+    expect(readdirSync(uploads)).toEqual([]);
+    await request(server).get('/api/v1/open').expect(200);
+    await new Promise((resolve) => server.close(resolve));
   });
 
   it('clears uploads that a killed process left, and no fresh one', async () => {

@@ -14,8 +14,14 @@ export interface LossFileRow {
 
 const COLUMNS: Columns = { required: ['event', 'mean_loss', 'sd', 'common_share'], optional: ['exposed_value'] };
 const LARGEST_AMOUNT = 1e15;
+/** The smallest amount that anybody loses; below it a unit is mistaken. */
+const SMALLEST_AMOUNT = 0.01;
+/** Below this share of its mean a deviation means certainty, and the laws would be needles. */
+const SMALLEST_VARIATION = 1e-4;
 /** A lognormal wider than this is a mistaken unit, and its tail would be made of a handful of states. */
 const LARGEST_VARIATION = 100;
+/** How far below the bound of a damage ratio's variance the square of sd must stay, so that rounding decides nothing. */
+const CLEAR_OF_BOUND = 1 - 1e-9;
 
 /** Reads and judges the rows of a loss table against the events that its catalogue knows. */
 export class LossFile implements TableReader<readonly LossFileRow[]> {
@@ -76,9 +82,11 @@ export class LossFile implements TableReader<readonly LossFileRow[]> {
 
 /** Refuses moments that no distribution of the kind has; they are never bent into shape in silence. */
 function judgeMoments(row: Row, mean: number, sd: number, exposed: number | null): void {
-  if (mean === 0 && sd > 0) row.fault('sd', 'must be 0 where mean_loss is 0: a loss is never negative');
+  if (mean > 0 && mean < SMALLEST_AMOUNT) row.fault('mean_loss', `must be 0, or ${SMALLEST_AMOUNT} or more`);
+  else if (sd > 0 && sd < SMALLEST_VARIATION * mean) row.fault('sd', `must be 0, or ${SMALLEST_VARIATION} times mean_loss or more`);
+  else if (mean === 0 && sd > 0) row.fault('sd', 'must be 0 where mean_loss is 0: a loss is never negative');
   else if (exposed !== null && mean > exposed) row.fault('mean_loss', `must not be above the exposed_value of ${exposed}`);
-  else if (exposed !== null && sd > 0 && sd * sd >= mean * (exposed - mean)) {
+  else if (exposed !== null && sd > 0 && sd * sd >= mean * (exposed - mean) * CLEAR_OF_BOUND) {
     const most = Math.sqrt(mean * (exposed - mean));
     row.fault('sd', `must be below ${Number(most.toPrecision(6))}: no loss between 0 and ${exposed} with a mean of ${mean} varies as much`);
   } else if (exposed === null && sd > LARGEST_VARIATION * mean) {
