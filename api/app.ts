@@ -6,6 +6,7 @@ import { auditReader } from '../db/read-models/audit';
 import { catalogueReader } from '../db/read-models/catalogues';
 import { deskReader } from '../db/read-models/desk';
 import { postRoom } from '../db/read-models/post-room';
+import { programmeReader } from '../db/read-models/programmes';
 import { submissionReader } from '../db/read-models/submissions';
 import { createDataSource } from '../db/data-source';
 import { auditTrail } from '../db/repositories/audit-trail';
@@ -14,6 +15,7 @@ import { firmsRepository } from '../db/repositories/firms';
 import { grantsRepository } from '../db/repositories/grants';
 import { lossTablesRepository } from '../db/repositories/loss-tables';
 import { peopleRepository } from '../db/repositories/people';
+import { programmesRepository } from '../db/repositories/programmes';
 import { sessionsRepository, signInAttempts } from '../db/repositories/sessions';
 import { submissionsRepository } from '../db/repositories/submissions';
 import { unitOfWork } from '../db/unit-of-work';
@@ -27,6 +29,7 @@ import { registerHealth } from './features/health/routes';
 import { registerOpenApi } from './features/openapi/routes';
 import { registerPeople } from './features/people/routes';
 import { registerPostRoom } from './features/post-room/routes';
+import { registerProgrammes } from './features/programmes/routes';
 import { firstPassword, hashPassword } from './features/session/passwords';
 import { registerSession } from './features/session/routes';
 import { registerSubmissions } from './features/submissions/routes';
@@ -84,15 +87,17 @@ export async function openApp(config: Config, log: Logger): Promise<OpenedApp> {
   });
   const notices = memoryNotices();
   const catalogues = cataloguesRepository(dataSource);
+  const submissions = submissionsRepository(dataSource);
   registerCatalogues(router, { ...shared, catalogues, notices, reader: catalogueReader(dataSource), fourEyes: config.LEANYEAR_FOUR_EYES });
   registerSubmissions(router, {
     ...shared,
     catalogues,
     notices,
-    submissions: submissionsRepository(dataSource),
+    submissions,
     lossTables: lossTablesRepository,
     reader: submissionReader(dataSource),
   });
+  registerProgrammes(router, { ...shared, notices, submissions, programmes: programmesRepository(dataSource), reader: programmeReader(dataSource) });
   registerDesk(router, { desk: deskReader(dataSource) });
   registerAudit(router, { auditReader: auditReader(dataSource) });
   registerPostRoom(router, { postRoom: postRoom(dataSource, { demo: config.LEANYEAR_DEMO }) });

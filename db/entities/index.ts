@@ -10,6 +10,7 @@ import {
   SessionRow,
   SignInAttemptRow,
 } from './people';
+import { ProgrammeRow } from './programme';
 
 type EntityClass = new () => object;
 
@@ -27,6 +28,7 @@ export const ENTITIES: EntityClass[] = [
   LossTableVersionRow,
   MailRow,
   PersonRow,
+  ProgrammeRow,
   SessionRow,
   SignInAttemptRow,
   SubmissionRow,
