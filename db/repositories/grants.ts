@@ -29,8 +29,9 @@ async function find(manager: EntityManager, id: string): Promise<GrantRecord | n
 
 export function grantsRepository(dataSource: DataSource): Grants {
   return {
-    async listOf(personId) {
-      const rows = await dataSource.manager.find(GrantRow, { where: { personId }, relations: { grantedBy: true }, order: { createdAt: 'DESC' } });
+    async listOf(personId, transaction) {
+      const manager = transaction === undefined ? dataSource.manager : managerOf(transaction);
+      const rows = await manager.find(GrantRow, { where: { personId }, relations: { grantedBy: true }, order: { createdAt: 'DESC' } });
       return rows.map(recordOf);
     },
     byId: (id) => find(dataSource.manager, id),

@@ -16,8 +16,9 @@ function find(manager: EntityManager, id: string): Promise<PersonRow | null> {
 
 export function peopleRepository(dataSource: DataSource): People {
   return {
-    async list() {
-      const rows = await dataSource.manager.find(PersonRow, { relations: { firm: true }, order: { name: 'ASC' } });
+    async list(transaction) {
+      const manager = transaction === undefined ? dataSource.manager : managerOf(transaction);
+      const rows = await manager.find(PersonRow, { relations: { firm: true }, order: { name: 'ASC' } });
       return rows.map(recordOf);
     },
     async byId(id) {

@@ -17,7 +17,8 @@ export interface GrantRecord {
 export type NewGrant = Omit<GrantRecord, 'id' | 'grantedBy' | 'endedAt'>;
 
 export interface Grants {
-  listOf(personId: string): Promise<GrantRecord[]>;
+  /** Inside a transaction it must be given: asking for a second connection there could starve the pool. */
+  listOf(personId: string, transaction?: Transaction): Promise<GrantRecord[]>;
   byId(id: string): Promise<GrantRecord | null>;
   /** Whether any senior underwriter holds a grant that has not ended; takes a lock so that two cannot be first. */
   anySeniorHoldsOne(transaction: Transaction): Promise<boolean>;

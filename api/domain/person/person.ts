@@ -17,7 +17,7 @@ export function permissionsOf(role: Role): readonly Permission[] {
 }
 
 export interface People {
-  list(): Promise<PersonRecord[]>;
+  list(transaction?: Transaction): Promise<PersonRecord[]>;
   byId(id: string): Promise<PersonRecord | null>;
   /** The account with its password's hash, active or not. */
   credentialsOf(email: string): Promise<{ person: PersonRecord; passwordHash: string } | null>;

@@ -1,0 +1,93 @@
+import { enforceAuthority, evaluateAuthority, measuredLayers, type RuleOutcome } from '../../domain/authority/authority';
+import type { QuoteRecord } from '../../domain/quote/quote';
+import type { Actor } from '../../domain/shared/actor';
+import type { Transaction } from '../../domain/shared/transaction';
+import { auditMove, lockForMove, type By, type QuoteDeps } from './deps';
+
+/** Every rule of a person's authority over a quote, today. */
+export async function authorityOver(deps: Pick<QuoteDeps, 'grants' | 'today'>, quote: QuoteRecord, personId: string, transaction?: Transaction): Promise<RuleOutcome[]> {
+  return evaluateAuthority(measuredLayers(quote), await deps.grants.listOf(personId, transaction), deps.today());
+}
+
+/** Moves a quote to referred and writes to every senior who may decide on it. */
+export async function refer(
+  deps: Pick<QuoteDeps, 'quotes' | 'people' | 'mails' | 'audit'>,
+  transaction: Transaction,
+  quote: QuoteRecord,
+  by: By,
+  failures: readonly RuleOutcome[],
+  note: string,
+): Promise<void> {
+  await deps.quotes.move(transaction, quote, 'referred', by.personId === null ? {} : { submittedBy: by.personId, decidedBy: null, decisionNote: null });
+  await auditMove(deps, transaction, by, quote, 'submit', 'referred', note || failures.map(({ message }) => message).join(' '));
+  const people = await deps.people.list(transaction);
+  const seniors = people.filter((p) => p.role === 'senior underwriter' && p.active && p.id !== by.personId && p.id !== quote.author.id);
+  for (const senior of seniors) {
+    await deps.mails.put(transaction, {
+      kind: 'referral waiting',
+      to: { personId: senior.id },
+      quoteId: quote.id,
+      subject: `Referral waiting: ${quote.reference}, version ${quote.number}`,
+      model: {
+        reference: quote.reference,
+        number: quote.number,
+        cedant: quote.cedant.name,
+        programmeName: quote.terms.name,
+        submittedBy: by.name,
+        failures: failures.map(({ message }) => message),
+        quoteId: quote.id,
+      },
+    });
+  }
+}
+
+/** Submits a draft: approved within the submitter's own authority, otherwise referred to the seniors. */
+export async function submitQuote(deps: QuoteDeps, actor: Actor, id: string, note: string): Promise<void> {
+  await deps.unitOfWork.run(async (transaction) => {
+    const quote = await lockForMove(deps, transaction, id, 'submit', actor);
+    const outcomes = await authorityOver(deps, quote, actor.personId, transaction);
+    const failures = outcomes.filter(({ pass }) => !pass);
+    if (failures.length > 0) {
+      await refer(deps, transaction, quote, actor, failures, note);
+      return;
+    }
+    const approval = enforceAuthority(quote, outcomes, actor.personId);
+    await deps.quotes.approve(transaction, quote, approval, { submittedBy: actor.personId, decidedBy: actor.personId, decisionNote: null });
+    await auditMove(deps, transaction, actor, quote, 'submit', 'approved', note);
+  });
+}
+
+async function tellSubmitter(deps: QuoteDeps, transaction: Transaction, quote: QuoteRecord, actor: Actor, outcome: 'cleared' | 'returned' | 'declined', note: string): Promise<void> {
+  const reader = quote.submittedBy ?? quote.author;
+  await deps.mails.put(transaction, {
+    kind: 'referral outcome',
+    to: { personId: reader.id },
+    quoteId: quote.id,
+    subject: `Referral ${outcome}: ${quote.reference}, version ${quote.number}`,
+    model: { reference: quote.reference, number: quote.number, outcome, decidedBy: actor.name, note, quoteId: quote.id },
+  });
+}
+
+/** Clears a referral within the senior's own bounds. */
+export async function clearQuote(deps: QuoteDeps, actor: Actor, id: string, note: string): Promise<void> {
+  await deps.unitOfWork.run(async (transaction) => {
+    const quote = await lockForMove(deps, transaction, id, 'clear', actor);
+    const approval = enforceAuthority(quote, await authorityOver(deps, quote, actor.personId, transaction), actor.personId);
+    await deps.quotes.approve(transaction, quote, approval, { decidedBy: actor.personId, decisionNote: note || null });
+    await auditMove(deps, transaction, actor, quote, 'clear', 'approved', note);
+    await tellSubmitter(deps, transaction, quote, actor, 'cleared', note);
+  });
+}
+
+async function decide(deps: QuoteDeps, actor: Actor, id: string, note: string, move: 'return' | 'decline'): Promise<void> {
+  const to = move === 'return' ? 'draft' : 'declined';
+  await deps.unitOfWork.run(async (transaction) => {
+    const quote = await lockForMove(deps, transaction, id, move, actor);
+    await deps.quotes.move(transaction, quote, to, { decidedBy: actor.personId, decisionNote: note });
+    await auditMove(deps, transaction, actor, quote, move, to, note);
+    await tellSubmitter(deps, transaction, quote, actor, move === 'return' ? 'returned' : 'declined', note);
+  });
+}
+
+export const returnQuote = (deps: QuoteDeps, actor: Actor, id: string, note: string): Promise<void> => decide(deps, actor, id, note, 'return');
+export const declineQuote = (deps: QuoteDeps, actor: Actor, id: string, note: string): Promise<void> => decide(deps, actor, id, note, 'decline');
