@@ -8,7 +8,7 @@ import { DeskTitle } from './core/title';
 import { routes } from './routes';
 
 // Dense fields keep their labels only when outlined.
-const fields: MatFormFieldDefaultOptions = { appearance: 'outline', subscriptSizing: 'dynamic', floatLabel: 'auto' };
+const fields: MatFormFieldDefaultOptions = { appearance: 'outline', subscriptSizing: 'dynamic', hideRequiredMarker: true };
 
 export const appConfig: ApplicationConfig = {
   providers: [

@@ -82,10 +82,12 @@ export class EventStream implements OnDestroy {
   /** Holds the stream open, and the lock with it, until told to stop. */
   private async listen(stop: AbortSignal, wanted: number): Promise<void> {
     let wait = SHORTEST_WAIT_MILLISECONDS;
+    let before = false;
     while (!stop.aborted) {
       await this.listenOnce(stop, () => {
         wait = SHORTEST_WAIT_MILLISECONDS;
-        if (Date.now() - wanted > PROMPT_MILLISECONDS) this.tell({ topic: 'resumed' });
+        if (before || Date.now() - wanted > PROMPT_MILLISECONDS) this.tell({ topic: 'resumed' });
+        before = true;
       });
       if (stop.aborted) return;
       await new Promise((resolve) => setTimeout(resolve, wait));

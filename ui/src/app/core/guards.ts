@@ -13,11 +13,11 @@ export const signedIn: CanActivateFn = async (_route, state) => {
 
 /** Lets in who may; others are told, at the address they asked for. The server checks again, and that is what counts. */
 export function may(permission: Permission): CanActivateFn {
-  return async () => {
+  return async (_route, state) => {
     const router = inject(Router);
     const sessions = inject(SessionStore);
     await sessions.load();
-    return sessions.may(permission) || new RedirectCommand(router.createUrlTree(['/forbidden']), { skipLocationChange: true });
+    return sessions.may(permission) || new RedirectCommand(router.createUrlTree(['/forbidden']), { browserUrl: state.url });
   };
 }
 

@@ -1,17 +1,26 @@
 import { ChangeDetectionStrategy, Component } from '@angular/core';
 
-const COUNT = 84;
+const COUNT = 72;
 
-/** A run of years that looks drawn and is always the same: plenty rises slowly, lean comes at a stroke. */
-function years(): { x: number; height: number; lean: boolean }[] {
-  let state = 20_117;
-  let plenty = 0.62;
+interface Year {
+  readonly x: number;
+  readonly height: number;
+  readonly lean: boolean;
+}
+
+/** A run of years that looks drawn and is always the same: plenty comes slowly, lean years at a stroke. */
+function years(): Year[] {
+  let state = 90_210;
+  const chance = (): number => {
+    state = (Math.imul(state, 1_664_525) + 1_013_904_223) >>> 0;
+    return state / 4_294_967_296;
+  };
+  let store = 0.6;
   return Array.from({ length: COUNT }, (_, index) => {
-    state = (Math.imul(state, 1_103_515_245) + 12_345) >>> 0;
-    const chance = state / 4_294_967_296;
-    const lean = chance < 0.13;
-    plenty = lean ? plenty * (0.22 + chance * 2) : plenty + (0.92 - plenty) * 0.2;
-    return { x: index + 0.5, height: Math.round(plenty * 960) / 10, lean: plenty < 0.4 };
+    const lean = chance() < 0.09;
+    store = lean ? store * (0.12 + 0.4 * chance()) : store + (1 - store) * 0.11;
+    const height = store * (0.78 + 0.22 * chance());
+    return { x: index + 0.5, height: Math.round(height * 1000) / 10, lean: store < 0.36 };
   });
 }
 
@@ -32,17 +41,19 @@ function years(): { x: number; height: number; lean: boolean }[] {
   styles: `
     :host {
       display: block;
+      position: relative;
     }
 
     svg {
-      display: block;
+      position: absolute;
+      inset: 0;
       width: 100%;
       height: 100%;
     }
 
     line {
       stroke: #5fb3b0;
-      stroke-width: 2.5px;
+      stroke-width: 2px;
       vector-effect: non-scaling-stroke;
     }
 

@@ -22,6 +22,7 @@ export const LAYER_COLOURS = 6;
 /** Reads the tokens through a probe, because a custom property itself does not resolve `light-dark()`. */
 export function inkOf(host: HTMLElement): Ink {
   const probe = host.ownerDocument.createElement('span');
+  probe.style.transition = 'none';
   host.append(probe);
   const style = getComputedStyle(probe);
   const colour = (token: string): string => {

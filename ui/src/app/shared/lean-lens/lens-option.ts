@@ -55,7 +55,7 @@ export function lensOption(ink: Ink, bins: readonly LensBin[], layers: readonly 
   });
   const dash = (index: number): unknown => DASHES[Math.floor(index / ink.layers.length) % DASHES.length];
   return {
-    grid: PANELS.map(({ top, height }) => ({ left: 52, right: 14, top, height })),
+    grid: PANELS.map(({ top, height }) => ({ left: 52, right: 14, top, height, outerBoundsMode: 'none' })),
     axisPointer: { link: [{ xAxisIndex: 'all' }], lineStyle: { color: ink.ruleStrong } },
     tooltip: {
       trigger: 'axis',
@@ -96,6 +96,6 @@ export function lensOption(ink: Ink, bins: readonly LensBin[], layers: readonly 
         ];
       }),
     ],
-    graphic: ['Hunger: capital strain m ÷ E[m]', 'Mean payoff ÷ limit', 'Hunger × payoff: the area is the price; dashed, without hunger'].map((text, index) => axisName(ink, text, index)),
+    graphic: ['Hunger: capital strain m ÷ E[m]', 'Mean payoff ÷ limit', 'Product, whose area is the price (dashed: no hunger)'].map((text, index) => axisName(ink, text, index)),
   };
 }
