@@ -1,4 +1,4 @@
-import { HttpClient, HttpContext, HttpEventType, HttpHeaders } from '@angular/common/http';
+import { HttpClient, type HttpContext, HttpEventType, HttpHeaders } from '@angular/common/http';
 import { inject, Injectable, type ResourceRef } from '@angular/core';
 import { rxResource } from '@angular/core/rxjs-interop';
 import type { BodyInput, ParamsOf, QueryInput, ReplyOf, RouteSpec } from '@leanyear/contract/route';
@@ -49,7 +49,7 @@ export class Api {
   upload<R extends RouteSpec>(spec: R, args: CallArgs<R>, file: File): Observable<UploadStep<ReplyOf<R>>> {
     const form = new FormData();
     // Fields before the file, so that the server can refuse before it has read the file.
-    for (const [name, value] of Object.entries((args.body ?? {}) as Record<string, unknown>)) form.append(name, String(value));
+    for (const [name, value] of Object.entries((args.body ?? {}))) form.append(name, String(value));
     form.append('file', file, file.name);
     return this.http
       .request<ReplyOf<R>>(spec.method.toUpperCase(), pathOf(spec, args.params), {

@@ -5,10 +5,7 @@ import { firstValueFrom } from 'rxjs';
 import { Api } from './api';
 import { asProblem } from './problem';
 import { SessionStore } from './session';
-import { SIGN_IN } from './sign-in-context';
-
-/** When any tab of this browser last had the session renewed, in milliseconds. */
-export const RENEWED_AT = 'leanyear.renewed-at';
+import { RENEWED_AT, SIGN_IN } from './sign-in-context';
 
 /** Renews an expired sign-in: once for all tabs, and over the page where only the password helps. */
 @Injectable({ providedIn: 'root' })

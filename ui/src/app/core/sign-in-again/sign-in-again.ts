@@ -8,8 +8,8 @@ import { Router } from '@angular/router';
 import { firstValueFrom, fromEvent } from 'rxjs';
 import { takeUntilDestroyed } from '@angular/core/rxjs-interop';
 import { asProblem } from '../problem';
-import { RENEWED_AT } from '../renewal';
 import { SessionStore } from '../session';
+import { RENEWED_AT } from '../sign-in-context';
 
 /** Asks for the password over the page, which stays as it is, with all that was typed. */
 @Component({
@@ -77,6 +77,6 @@ export class SignInAgain {
 
 /** Whether the person has signed in again. */
 export async function signInAgain(injector: Injector): Promise<boolean> {
-  const dialog = injector.get(MatDialog).open<SignInAgain, void, boolean>(SignInAgain, { disableClose: true, width: '26rem' });
+  const dialog = injector.get(MatDialog).open<SignInAgain, undefined, boolean>(SignInAgain, { disableClose: true, width: '26rem' });
   return (await firstValueFrom(dialog.afterClosed())) ?? false;
 }

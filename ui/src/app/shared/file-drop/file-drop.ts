@@ -1,4 +1,4 @@
-import { ChangeDetectionStrategy, Component, ElementRef, inject, input, output, signal, viewChild } from '@angular/core';
+import { ChangeDetectionStrategy, Component, type ElementRef, inject, input, output, signal, viewChild } from '@angular/core';
 import { LOCALE } from '../../core/locale';
 import { figure } from '../format/numbers';
 import { Icon } from '../icon/icon';
