@@ -40,7 +40,7 @@ describe('the way to a page', () => {
   });
 
   it('leads through the sign-in and back', async () => {
-    expect(await visit(null)).toEqual({ text: 'sign in', path: '/sign-in?then=%2Faudit%3Ffind%3Dx' });
+    expect(await visit(null)).toEqual({ text: 'sign in', path: '/sign-in?next=%2Faudit%3Ffind%3Dx' });
   });
 
   it('begins at the desk, for brokers at their quotations', () => {

@@ -8,7 +8,7 @@ export const signedIn: CanActivateFn = async (_route, state) => {
   const router = inject(Router);
   const session = await inject(SessionStore).load();
   if (session !== null) return true;
-  return router.createUrlTree(['/sign-in'], { queryParams: state.url === '/' ? {} : { then: state.url } });
+  return router.createUrlTree(['/sign-in'], { queryParams: state.url === '/' ? {} : { next: state.url } });
 };
 
 /** Lets in who may; others are told, at the address they asked for. The server checks again, and that is what counts. */

@@ -13,8 +13,8 @@ import { DemoAccounts, type DemoAccount } from './demo-accounts';
 import { Years } from './years';
 
 /** Only a path of our own: an address from elsewhere must not be a way out of here. */
-function ownPath(then: string | undefined): string | null {
-  return then !== undefined && /^\/(?![/\\])/.test(then) ? then : null;
+function ownPath(next: string | undefined): string | null {
+  return next !== undefined && /^\/(?![/\\])/.test(next) ? next : null;
 }
 
 @Component({
@@ -28,7 +28,7 @@ export class SignIn {
   private readonly sessions = inject(SessionStore);
   private readonly router = inject(Router);
   /** Where to go on, from the address. */
-  readonly then = input<string>();
+  readonly next = input<string>();
 
   protected readonly form = inject(FormBuilder).nonNullable.group({
     email: ['', [Validators.required, Validators.email]],
@@ -52,7 +52,7 @@ export class SignIn {
     const { email, password } = this.form.getRawValue();
     try {
       const session = await this.sessions.signIn(email.trim(), password);
-      await this.router.navigateByUrl(ownPath(this.then()) ?? homeOf(session), { replaceUrl: true });
+      await this.router.navigateByUrl(ownPath(this.next()) ?? homeOf(session), { replaceUrl: true });
     } catch (error) {
       const problem = asProblem(error);
       this.refusal.set({ text: problem.message, lockedOut: problem.status === 429 });

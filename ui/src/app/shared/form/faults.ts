@@ -14,8 +14,14 @@ export function faultOf(control: AbstractControl): string {
   return 'This is not right.';
 }
 
+/** The contract's messages go on from the field's name: “must be above 0”. */
+function sentence(message: string): string {
+  const whole = /^(must|is|has|was|may|cannot)\b/.test(message) ? `This ${message}` : message.charAt(0).toUpperCase() + message.slice(1);
+  return /[.!?]$/.test(whole) ? whole : `${whole}.`;
+}
+
 function childOf(control: AbstractControl, name: string): AbstractControl | null {
-  if (control instanceof FormArray) return control.at(Number(name)) as AbstractControl | undefined ?? null;
+  if (control instanceof FormArray) return (control.controls as readonly AbstractControl[])[Number(name)] ?? null;
   if (control instanceof FormGroup) return (control.controls as Record<string, AbstractControl>)[name] ?? null;
   return null;
 }
@@ -29,11 +35,14 @@ export function showFaults(form: AbstractControl, problem: ProblemError): readon
     let found: AbstractControl | null = form;
     for (const name of fault.path.split('.')) found = found === null ? null : childOf(found, name);
     if (found === null || found === form) return true;
-    found.setErrors({ ...found.errors, server: `This ${fault.message}`.replace(/^This (?!must|is|has|was)/, '') });
+    found.setErrors({ ...found.errors, server: sentence(fault.message) });
     found.markAsTouched();
     return false;
   });
 }
 
 /** Decimal text above zero; what is no number is the amount input's business. */
-export const aboveZero: ValidatorFn = (control) => (Number(control.value) > 0 || control.value === '' || Number.isNaN(Number(control.value)) ? null : { aboveZero: 'This must be above 0.' });
+export const aboveZero: ValidatorFn = (control) => {
+  const text: unknown = control.value;
+  return text !== '' && Number(text) <= 0 ? { aboveZero: 'This must be above 0.' } : null;
+};
