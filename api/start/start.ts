@@ -32,7 +32,7 @@ export async function run(context: BootstrapContext, lock: RunningLock): Promise
   const logDir = join(dataDir, 'logs');
   mkdirSync(join(dataDir, 'uploads'), { recursive: true, mode: 0o700 });
   try {
-    for (const file of ['api/main.js', 'worker/main.js']) await endLeftOver(logDir, compiled(file));
+    for (const file of ['api/main.js', 'api/start/together.js', 'worker/main.js']) await endLeftOver(logDir, compiled(file));
     const servers = await findServers(context, started);
     signal.throwIfAborted();
     const wanted = process.env['PORT'];
@@ -48,7 +48,7 @@ export async function run(context: BootstrapContext, lock: RunningLock): Promise
       await runOwn('demo', compiled('api/start/seed.js'), env, signal);
     }
 
-    const api = ownProgram({ name: 'API', file: compiled('api/main.js'), env, logDir, say, serves: () => answersOn(port) });
+    const api = ownProgram({ name: 'API', file: compiled(servers.redis === null ? 'api/start/together.js' : 'api/main.js'), env, logDir, say, serves: () => answersOn(port) });
     started.push(api);
     await api.start();
     if (servers.redis !== null) {

@@ -8,6 +8,7 @@ import request from 'supertest';
 import { openApp } from '../../api/app';
 import { readConfig } from '../../api/config/config';
 import type { Role } from '../../api/domain/vocabulary';
+import { memoryNotices } from '../../api/queue/memory-notices';
 import { hashPassword } from '../../api/features/session/passwords';
 import { createTestDatabase, type TestDatabase } from './database';
 import { testVariable } from './environment';
@@ -56,7 +57,7 @@ export async function openTestApi(env: NodeJS.ProcessEnv = {}): Promise<TestApi>
     LOG_LEVEL: 'error',
     ...env,
   });
-  const app = await openApp(config, pino({ level: config.LOG_LEVEL }));
+  const app = await openApp(config, pino({ level: config.LOG_LEVEL }), memoryNotices());
   const owner = new Client({ connectionString: database.ownerUrl });
   await owner.connect();
 

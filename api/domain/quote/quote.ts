@@ -1,24 +1,9 @@
+import type { LayerTermsRecord, ProgrammeTermsRecord } from '../programme/programme';
 import type { QuoteKind, QuoteState, RunStanding } from '../vocabulary';
 
-/** Terms of a layer as a quote freezes them; amounts for 100%, text in the programme's currency. */
-export interface FrozenLayer {
-  readonly key: string;
-  readonly name: string;
-  readonly limit: string;
-  readonly attachment: string;
-  readonly annualDeductible: string;
-  readonly reinstatements: readonly number[];
-  readonly brokerage: number;
-  readonly writtenLine: number;
-}
-
-export interface FrozenTerms {
-  readonly name: string;
-  readonly currency: string;
-  readonly inceptionOn: string;
-  readonly lossTableIds: readonly string[];
-  readonly layers: readonly FrozenLayer[];
-}
+/** Terms as a quote freezes them: those of the programme when its run was made. */
+export type FrozenTerms = ProgrammeTermsRecord;
+export type FrozenLayer = LayerTermsRecord;
 
 /** What the run under a quote says of a layer, programme currency, for 100%. */
 export interface LayerFigures {

@@ -2,10 +2,9 @@ import type { Transaction } from './transaction';
 
 /**
  * Wakes to be given once the transaction has committed. A wake carries an id, never data: the rows are the truth.
- * `run.start` run id · `run.cancel` run id · `mail.send` mail id · `book.moved` book version number ·
- * `run.ended` run id.
+ * `run.start` run id · `run.ended` run id · `mail.send` mail id · `book.moved` book version number.
  */
-export const OUTBOX_TOPICS = ['run.start', 'run.cancel', 'run.ended', 'mail.send', 'book.moved'] as const;
+export const OUTBOX_TOPICS = ['run.start', 'run.ended', 'mail.send', 'book.moved'] as const;
 export type OutboxTopic = (typeof OUTBOX_TOPICS)[number];
 
 export interface Outbox {

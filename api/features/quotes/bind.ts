@@ -2,11 +2,12 @@ import { enforceAuthority } from '../../domain/authority/authority';
 import { twelveMonthsFrom } from '../../domain/book/book';
 import { capacityNeeded } from '../../domain/capacity/capacity';
 import type { FrozenLayer, QuoteRecord } from '../../domain/quote/quote';
+import { auditMove } from '../../domain/quote/audit-move';
+import { authorityOver } from '../../domain/quote/refer';
 import type { Actor } from '../../domain/shared/actor';
 import { Refused } from '../../domain/shared/errors';
-import { auditMove, lockForMove, type QuoteDeps } from './deps';
+import { lockForMove, type QuoteDeps } from './deps';
 import { mailLayers } from './issue';
-import { authorityOver } from './referral';
 
 /** The house's bound line of an ordered layer: its written line, and never more than the whole order. */
 function boundLine(quote: QuoteRecord, layer: FrozenLayer): number {

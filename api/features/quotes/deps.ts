@@ -30,30 +30,6 @@ export interface QuoteDeps {
   readonly notify: (notice: Notice) => Promise<void>;
 }
 
-/** Who acts, as the audit trail names them. */
-export type By = Pick<Actor, 'personId' | 'name'> | { readonly personId: null; readonly name: string };
-
-export function auditMove(
-  deps: Pick<QuoteDeps, 'audit'>,
-  transaction: Transaction,
-  by: By,
-  quote: Pick<QuoteRecord, 'id' | 'state'>,
-  move: string,
-  to: string,
-  note: string | null,
-): Promise<void> {
-  return deps.audit.append(transaction, {
-    actorId: by.personId,
-    actor: by.name,
-    action: `quote ${move}`,
-    subject: 'quote',
-    subjectId: quote.id,
-    from: quote.state,
-    to,
-    note: note === '' ? null : note,
-  });
-}
-
 /**
  * Locks a quote for a move that nothing stands against.
  * @throws NotFound, or Refused with every reason at once

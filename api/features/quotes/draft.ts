@@ -1,9 +1,10 @@
 import type { NewQuoteRow } from '../../domain/quote/ports';
 import type { RunUnderQuote } from '../../domain/quote/quote';
+import { auditMove } from '../../domain/quote/audit-move';
 import type { Actor } from '../../domain/shared/actor';
 import { ChangedMeanwhile, InvalidInput, NotFound, Refused } from '../../domain/shared/errors';
 import type { Transaction } from '../../domain/shared/transaction';
-import { auditMove, lockForMove, type QuoteDeps } from './deps';
+import { lockForMove, type QuoteDeps } from './deps';
 import type { QuoteKind } from '../../domain/vocabulary';
 
 export interface DraftInput {

@@ -1,8 +1,9 @@
 import { capacityNeeded } from '../../domain/capacity/capacity';
 import type { MailLayer } from '../../domain/mail/mail';
 import type { QuoteRecord } from '../../domain/quote/quote';
+import { auditMove } from '../../domain/quote/audit-move';
 import type { Actor } from '../../domain/shared/actor';
-import { auditMove, lockForMove, type QuoteDeps } from './deps';
+import { lockForMove, type QuoteDeps } from './deps';
 
 /** A link can be opened for a month after the quote's validity, to read what became of it. */
 const LINK_DAYS_AFTER = 30;
@@ -57,16 +58,5 @@ export async function withdrawQuote(deps: QuoteDeps, actor: Actor, id: string, n
     await deps.quotes.move(transaction, quote, 'withdrawn');
     await deps.links.revokeAll(transaction, quote.id);
     await auditMove(deps, transaction, actor, quote, 'withdraw', 'withdrawn', note);
-  });
-}
-
-/** Lets a quote lapse whose validity has passed; does nothing where it has moved on meanwhile. */
-export async function lapseQuote(deps: QuoteDeps, id: string): Promise<void> {
-  await deps.unitOfWork.run(async (transaction) => {
-    const quote = await deps.quotes.lock(transaction, id);
-    if (quote === null || quote.state !== 'issued' || quote.validUntil >= deps.today()) return;
-    await deps.quotes.move(transaction, quote, 'lapsed');
-    await deps.zones.release(transaction, quote.id);
-    await auditMove(deps, transaction, { personId: null, name: 'system' }, quote, 'lapse', 'lapsed', null);
   });
 }

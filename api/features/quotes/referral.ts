@@ -1,45 +1,10 @@
-import { enforceAuthority, evaluateAuthority, measuredLayers, type RuleOutcome } from '../../domain/authority/authority';
+import { enforceAuthority } from '../../domain/authority/authority';
+import { auditMove } from '../../domain/quote/audit-move';
+import { authorityOver, refer } from '../../domain/quote/refer';
 import type { QuoteRecord } from '../../domain/quote/quote';
 import type { Actor } from '../../domain/shared/actor';
 import type { Transaction } from '../../domain/shared/transaction';
-import { auditMove, lockForMove, type By, type QuoteDeps } from './deps';
-
-/** Every rule of a person's authority over a quote, today. */
-export async function authorityOver(deps: Pick<QuoteDeps, 'grants' | 'today'>, quote: QuoteRecord, personId: string, transaction?: Transaction): Promise<RuleOutcome[]> {
-  return evaluateAuthority(measuredLayers(quote), await deps.grants.listOf(personId, transaction), deps.today());
-}
-
-/** Moves a quote to referred and writes to every senior who may decide on it. */
-export async function refer(
-  deps: Pick<QuoteDeps, 'quotes' | 'people' | 'mails' | 'audit'>,
-  transaction: Transaction,
-  quote: QuoteRecord,
-  by: By,
-  failures: readonly RuleOutcome[],
-  note: string,
-): Promise<void> {
-  await deps.quotes.move(transaction, quote, 'referred', by.personId === null ? {} : { submittedBy: by.personId, decidedBy: null, decisionNote: null });
-  await auditMove(deps, transaction, by, quote, 'submit', 'referred', note || failures.map(({ message }) => message).join(' '));
-  const people = await deps.people.list(transaction);
-  const seniors = people.filter((p) => p.role === 'senior underwriter' && p.active && p.id !== by.personId && p.id !== quote.author.id);
-  for (const senior of seniors) {
-    await deps.mails.put(transaction, {
-      kind: 'referral waiting',
-      to: { personId: senior.id },
-      quoteId: quote.id,
-      subject: `Referral waiting: ${quote.reference}, version ${quote.number}`,
-      model: {
-        reference: quote.reference,
-        number: quote.number,
-        cedant: quote.cedant.name,
-        programmeName: quote.terms.name,
-        submittedBy: by.name,
-        failures: failures.map(({ message }) => message),
-        quoteId: quote.id,
-      },
-    });
-  }
-}
+import { lockForMove, type QuoteDeps } from './deps';
 
 /** Submits a draft: approved within the submitter's own authority, otherwise referred to the seniors. */
 export async function submitQuote(deps: QuoteDeps, actor: Actor, id: string, note: string): Promise<void> {

@@ -1,5 +1,6 @@
 import * as contract from '../../contract/quotes';
 import type { Quote } from '../../contract/quotes';
+import { authorityOver } from '../../domain/quote/refer';
 import type { Actor } from '../../domain/shared/actor';
 import { NotFound } from '../../domain/shared/errors';
 import { serve, type ApiRouter } from '../../http/serve';
@@ -7,7 +8,7 @@ import { bindQuote } from './bind';
 import { tell, type QuoteDeps } from './deps';
 import { changeDraft, draftQuote, reviseQuote } from './draft';
 import { issueQuote, withdrawQuote } from './issue';
-import { authorityOver, clearQuote, declineQuote, returnQuote, submitQuote } from './referral';
+import { clearQuote, declineQuote, returnQuote, submitQuote } from './referral';
 import { quoteSummary, quoteView } from './view';
 
 async function shown(deps: QuoteDeps, id: string, actor: Actor): Promise<Quote> {

@@ -2,10 +2,11 @@ import type { Quote, QuoteSummary } from '../../contract/quotes';
 import { lineAmountText, measuredLayers } from '../../domain/authority/authority';
 import { amountOf, numberOf, timesShare, unitsOf } from '../../domain/money';
 import type { QuoteRecord } from '../../domain/quote/quote';
+import { authorityOver } from '../../domain/quote/refer';
 import { movesFor } from '../../domain/quote/rules';
 import type { Actor } from '../../domain/shared/actor';
 import type { QuoteDeps } from './deps';
-import { authorityOver } from './referral';
+
 
 export function quoteSummary(quote: QuoteRecord): QuoteSummary {
   const layers = measuredLayers(quote);

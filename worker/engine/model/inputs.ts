@@ -1,9 +1,6 @@
 /** States in a block: the unit of work and of joining, fixed for ever because partial sums depend on it. */
 export const BLOCK_STATES = 16_384;
 
-/** Goes into the hash of every run: moves whenever a number that the engine gives could move. */
-export const ENGINE_VERSION = '1';
-
 /** An event catalogue: `n` events, all arrays of that length. */
 export interface Catalogue {
   /** Stable name of the catalogue and all its versions; keys the random numbers. */

@@ -1,0 +1,75 @@
+import { Queue, Worker, type ConnectionOptions, type Job } from 'bullmq';
+import { z } from 'zod';
+import { OUTBOX_TOPICS } from '../domain/shared/outbox';
+import { FIRST_WAIT_MILLISECONDS, SIDE_BY_SIDE, TRIES, type Wake, type WakeQueue } from './port';
+
+const jobData = z.object({ topic: z.enum(OUTBOX_TOPICS), subjectId: z.string() });
+
+/** A worker that was killed is noticed within about six seconds, and its job given to another. */
+const RECOVERY = { lockDuration: 5000, stalledInterval: 2000, maxStalledCount: 3 } as const;
+const KEEP_SECONDS = 3600;
+
+function connectionOf(redisUrl: string, forWorker: boolean): ConnectionOptions {
+  const url = new URL(redisUrl);
+  return {
+    host: url.hostname,
+    port: Number(url.port || 6379),
+    ...(url.username === '' ? {} : { username: decodeURIComponent(url.username) }),
+    ...(url.password === '' ? {} : { password: decodeURIComponent(url.password) }),
+    db: Number(url.pathname.slice(1) || 0),
+    ...(url.protocol === 'rediss:' ? { tls: {} } : {}),
+    maxRetriesPerRequest: forWorker ? null : 1,
+    // A wake that cannot be handed over now must fail now: its row waits in the outbox.
+    enableOfflineQueue: forWorker,
+    retryStrategy: (attempt: number) => Math.min(200 * attempt, 2000),
+  };
+}
+
+/** Runs have a queue of their own, so that a long one holds up no mail. */
+const queueOf = (topic: Wake['topic']): 'runs' | 'acts' => (topic === 'run.start' ? 'runs' : 'acts');
+
+/** The wake queue on Redis. */
+export function bullmqQueue(redisUrl: string, prefix = 'leanyear'): WakeQueue {
+  const options = { connection: connectionOf(redisUrl, false), prefix, skipWaitingForReady: true };
+  const queues = { runs: new Queue('runs', options), acts: new Queue('acts', options) };
+  // Connection trouble is met where a wake is handed over; without a listener it would end the process.
+  for (const queue of Object.values(queues)) queue.on('error', () => undefined);
+  const workers: Worker[] = [];
+  return {
+    async add({ id, topic, subjectId }) {
+      await queues[queueOf(topic)].add(
+        topic,
+        { topic, subjectId },
+        {
+          jobId: id,
+          attempts: TRIES[topic],
+          backoff: { type: 'exponential', delay: FIRST_WAIT_MILLISECONDS },
+          removeOnComplete: { age: KEEP_SECONDS, count: 1000 },
+          removeOnFail: { age: KEEP_SECONDS, count: 1000 },
+        },
+      );
+    },
+    async check() {
+      await queues.acts.getJobCounts('waiting');
+    },
+    work(handlers, onTrouble) {
+      const process = async (job: Job): Promise<void> => {
+        const { topic, subjectId } = jobData.parse(job.data);
+        await handlers[topic](subjectId);
+      };
+      for (const [name, concurrency] of [['runs', 1], ['acts', SIDE_BY_SIDE]] as const) {
+        const worker = new Worker(name, process, { connection: connectionOf(redisUrl, true), prefix, concurrency, ...RECOVERY });
+        worker.on('failed', (job, error) => {
+          const data = jobData.safeParse(job?.data);
+          onTrouble(error, data.success ? data.data : { topic: 'run.start', subjectId: 'unknown' });
+        });
+        worker.on('error', () => undefined);
+        workers.push(worker);
+      }
+    },
+    async close() {
+      await Promise.all(workers.map((worker) => worker.close()));
+      await Promise.all(Object.values(queues).map((queue) => queue.close()));
+    },
+  };
+}

@@ -1,0 +1,54 @@
+import Redis from 'ioredis';
+import { z } from 'zod';
+import type { Notice } from '../domain/shared/stream';
+import { ROLES, STREAM_TOPICS } from '../domain/vocabulary';
+import type { Notices } from './notices';
+
+const CHANNEL = 'leanyear:notices';
+const notice = z.object({
+  topic: z.enum(STREAM_TOPICS),
+  id: z.string(),
+  progress: z.object({ done: z.number(), total: z.number(), doing: z.string() }).optional(),
+  state: z.string().optional(),
+  roles: z.array(z.enum(ROLES)).optional(),
+});
+
+/** A notice board between processes, on Redis publish/subscribe. Losing a notice loses nothing, so trouble is only reported. */
+export function redisNotices(redisUrl: string, onTrouble: (error: unknown) => void): Notices {
+  const options = { maxRetriesPerRequest: 1, enableOfflineQueue: false, retryStrategy: (attempt: number) => Math.min(200 * attempt, 2000) };
+  const sender = new Redis(redisUrl, options);
+  const receiver = new Redis(redisUrl, { ...options, maxRetriesPerRequest: null, enableOfflineQueue: true });
+  const listeners = new Set<(heard: Notice) => void>();
+  sender.on('error', onTrouble);
+  receiver.on('error', onTrouble);
+  receiver.subscribe(CHANNEL).catch(onTrouble);
+  receiver.on('message', (_channel, text) => {
+    const parsed = notice.safeParse(JSON.parse(text));
+    if (!parsed.success) {
+      onTrouble(parsed.error);
+      return;
+    }
+    for (const listener of listeners) listener(parsed.data as Notice);
+  });
+  return {
+    async publish(said) {
+      try {
+        await sender.publish(CHANNEL, JSON.stringify(said));
+      } catch (error) {
+        onTrouble(error);
+      }
+    },
+    subscribe(listener) {
+      listeners.add(listener);
+      return () => listeners.delete(listener);
+    },
+    async check() {
+      await sender.ping();
+    },
+    close() {
+      sender.disconnect();
+      receiver.disconnect();
+      return Promise.resolve();
+    },
+  };
+}

@@ -1,0 +1,46 @@
+import { parentPort } from 'node:worker_threads';
+import { EngineInputError, joinBlocks, prepare, valueBlock, type BlockResult, type Prepared } from '../engine';
+import type { Answer, Ask } from './messages';
+
+let prepared: Prepared | null = null;
+
+function buffersOf(block: BlockResult): ArrayBuffer[] {
+  const arrays = [
+    block.bookLoss,
+    ...block.payoffs,
+    block.recoverySums,
+    block.recoverySquares,
+    block.occurrenceLoss,
+    block.aggregateLoss,
+    ...block.hits.flatMap((hits) => [hits.state, hits.event, hits.recovery]),
+  ];
+  return arrays.map((array) => array.buffer as ArrayBuffer);
+}
+
+function answer(ask: Ask): { answer: Answer; transfer: ArrayBuffer[] } {
+  if (ask.kind === 'prepare') {
+    prepared = prepare(ask.inputs);
+    return { answer: { kind: 'prepared', blocks: prepared.blocks }, transfer: [] };
+  }
+  if (prepared === null) throw new Error('a thread was asked for a block before it was prepared');
+  if (ask.kind === 'block') {
+    const block = valueBlock(prepared, ask.index);
+    return { answer: { kind: 'block', block }, transfer: buffersOf(block) };
+  }
+  const valuation = joinBlocks(prepared, ask.blocks);
+  const { capital, payoffs } = valuation.series;
+  return { answer: { kind: 'joined', valuation }, transfer: [capital, ...payoffs].map((array) => array.buffer as ArrayBuffer) };
+}
+
+parentPort?.on('message', (ask: Ask) => {
+  try {
+    const { answer: reply, transfer } = answer(ask);
+    parentPort?.postMessage(reply, transfer);
+  } catch (error) {
+    const reply: Answer =
+      error instanceof EngineInputError
+        ? { kind: 'refused', words: error.message }
+        : { kind: 'broken', stack: error instanceof Error ? (error.stack ?? error.message) : String(error) };
+    parentPort?.postMessage(reply);
+  }
+});

@@ -1,0 +1,54 @@
+import { createHash } from 'node:crypto';
+import { runResult, type RunResult } from '../../../api/contract/runs';
+import type { ProgrammeTermsRecord } from '../../../api/domain/programme/programme';
+import { canonicalJson } from '../../../api/domain/run/canonical';
+import type { Valuation } from '../../engine';
+import type { BasisTerms } from '../../../api/contract/house';
+
+/** The valuation as the contract shows it; parsed, so that nothing else is ever stored. */
+export function resultOf(valuation: Valuation, terms: ProgrammeTermsRecord, basis: BasisTerms): RunResult {
+  const { programme, house, selfCheck } = valuation;
+  const tail = (points: typeof house.tailBefore) => points.map(({ years, value }) => ({ years, loss: value ?? 0 }));
+  return runResult.parse({
+    currency: terms.currency,
+    states: valuation.states,
+    layers: valuation.layers.map((layer) => ({
+      ...layer,
+      name: terms.layers.find(({ key }) => key === layer.key)?.name ?? layer.key,
+      expectedLossShareOfLimit: layer.expectedLoss.value / Number(terms.layers.find(({ key }) => key === layer.key)?.limit ?? 1),
+    })),
+    programme: {
+      expectedLoss: programme.expectedLoss,
+      standardDeviation: programme.standardDeviation,
+      walkAwayPremium: programme.walkAwayPremium,
+      technicalPremium: programme.technicalPremium,
+      exceedance: programme.occurrence.map((point, i) => ({
+        years: point.years,
+        occurrence: point.value,
+        occurrenceTail: point.tailValue,
+        aggregate: programme.aggregate[i]?.value ?? null,
+        aggregateTail: programme.aggregate[i]?.tailValue ?? null,
+      })),
+    },
+    lens: valuation.lens,
+    house: {
+      currency: basis.currency,
+      capital: basis.capital,
+      sureValue: house.sureValue,
+      risklessRate: house.risklessRate,
+      largestSharpeRatio: house.largestSharpeRatio,
+      floorShare: house.floorShare,
+      effectiveStates: house.effectiveStates,
+      tailBefore: tail(house.tailBefore),
+      tailAfter: tail(house.tailAfter),
+    },
+    selfCheck: { largest: selfCheck.largest, flagged: selfCheck.flagged, groundUp: selfCheck.groundUp },
+  });
+}
+
+/** Hash over a result and its yearly payoffs: the same inputs give the same, to the last byte. */
+export function resultHash(result: RunResult, series: readonly { readonly values: Float64Array }[]): string {
+  const hash = createHash('sha256').update(canonicalJson(result));
+  for (const { values } of series) hash.update(Buffer.from(values.buffer, values.byteOffset, values.byteLength));
+  return hash.digest('hex');
+}
