@@ -1,5 +1,5 @@
-import { provideHttpClient, withFetch, withInterceptors } from '@angular/common/http';
-import { ErrorHandler, LOCALE_ID, provideBrowserGlobalErrorListeners, type ApplicationConfig } from '@angular/core';
+import { provideHttpClient, withInterceptors } from '@angular/common/http';
+import { ErrorHandler, provideBrowserGlobalErrorListeners, type ApplicationConfig } from '@angular/core';
 import { MAT_FORM_FIELD_DEFAULT_OPTIONS, type MatFormFieldDefaultOptions } from '@angular/material/form-field';
 import { provideRouter, TitleStrategy, withComponentInputBinding, withInMemoryScrolling, withRouterConfig } from '@angular/router';
 import { DeskErrorHandler } from './core/error-handler';
@@ -15,9 +15,9 @@ export const appConfig: ApplicationConfig = {
     provideBrowserGlobalErrorListeners(),
     { provide: ErrorHandler, useClass: DeskErrorHandler },
     { provide: TitleStrategy, useExisting: DeskTitle },
-    { provide: LOCALE_ID, useValue: 'en' },
     { provide: MAT_FORM_FIELD_DEFAULT_OPTIONS, useValue: fields },
-    provideHttpClient(withFetch(), withInterceptors([problems, expiredSignIn, ownRequest])),
+    // Not by fetch: it does not tell how far an upload is.
+    provideHttpClient(withInterceptors([problems, expiredSignIn, ownRequest])),
     provideRouter(
       routes,
       withComponentInputBinding(),

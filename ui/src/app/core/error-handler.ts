@@ -1,6 +1,7 @@
 import { inject, Injectable, type ErrorHandler } from '@angular/core';
 import { Notices } from './notices';
 import { asProblem } from './problem';
+import { RELOAD } from './reload';
 
 /** What a reload mends: the page is older than the server it talks to. */
 const STALE_PAGE = /dynamically imported module|Importing a module script failed/;
@@ -9,15 +10,13 @@ const STALE_PAGE = /dynamically imported module|Importing a module script failed
 @Injectable()
 export class DeskErrorHandler implements ErrorHandler {
   private readonly notices = inject(Notices);
+  private readonly reload = inject(RELOAD);
 
   handleError(error: unknown): void {
     const thrown: unknown = error instanceof Error && 'rejection' in error ? error.rejection : error;
     const problem = asProblem(thrown);
     if (STALE_PAGE.test(problem.message)) {
-      this.notices.fault('Leanyear has been renewed since this page was opened.', null, {
-        label: 'Load it again',
-        act: () => location.reload(),
-      });
+      this.notices.fault('Leanyear has been renewed since this page was opened.', null, { label: 'Load it again', act: this.reload });
       return;
     }
     if (problem.status === -1) reportError(thrown);

@@ -47,6 +47,12 @@ export class SessionStore {
     await firstValueFrom(this.api.send(readSession, { context: new HttpContext().set(SIGN_IN, 'renew') }));
   }
 
+  /** Whether what another tab has just kept says that somebody else signed in there: the cookies are theirs now. */
+  isSomebodyElse(event: StorageEvent): boolean {
+    const person = this.person();
+    return event.key === HINT && event.newValue !== null && person !== null && event.newValue !== person.id;
+  }
+
   take(session: Session): Session {
     localStorage.setItem(HINT, session.person.id);
     this.current.set(session);

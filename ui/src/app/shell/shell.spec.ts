@@ -7,12 +7,15 @@ import { provideRouter } from '@angular/router';
 import { RouterTestingHarness } from '@angular/router/testing';
 import type { Role } from '@leanyear/vocabulary';
 import { sessionOf } from '../../testing/session';
+import { RELOAD } from '../core/reload';
 import { SessionStore } from '../core/session';
 import { Shell } from './shell';
 import { ShellHarness } from './shell.harness';
 
 @Component({ changeDetection: ChangeDetectionStrategy.OnPush, template: '<h1>A page</h1>' })
 class Page {}
+
+const reload = jest.fn();
 
 async function open(role: Role, url = '/quotes') {
   localStorage.clear();
@@ -22,7 +25,7 @@ async function open(role: Role, url = '/quotes') {
     { path: 'people', component: Page },
   ];
   TestBed.configureTestingModule({
-    providers: [provideHttpClient(), provideHttpClientTesting(), provideRouter([{ path: 'sign-in', component: Page }, { path: '', component: Shell, children }])],
+    providers: [{ provide: RELOAD, useValue: reload }, provideHttpClient(), provideHttpClientTesting(), provideRouter([{ path: 'sign-in', component: Page }, { path: '', component: Shell, children }])],
   });
   TestBed.inject(SessionStore).take(sessionOf(role));
   const router = await RouterTestingHarness.create(url);
@@ -53,6 +56,15 @@ describe('the frame around the pages', () => {
     expect(localStorage.getItem('leanyear.theme')).toBe('dark');
     await shell.chooseTheme('As the system');
     expect(document.documentElement.dataset['theme']).toBeUndefined();
+  });
+
+  it('loads again when somebody else signs in, in another tab', async () => {
+    await open('underwriter');
+    const keep = (newValue: string): boolean => window.dispatchEvent(new StorageEvent('storage', { key: 'leanyear.signed-in', newValue }));
+    keep(sessionOf('underwriter').person.id);
+    expect(reload).not.toHaveBeenCalled();
+    keep('somebody-else');
+    expect(reload).toHaveBeenCalledTimes(1);
   });
 
   it('signs out', async () => {

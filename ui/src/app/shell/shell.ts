@@ -6,6 +6,7 @@ import { MatMenuModule } from '@angular/material/menu';
 import { NavigationEnd, Router, RouterLink, RouterLinkActive, RouterOutlet, type ActivatedRouteSnapshot } from '@angular/router';
 import { filter, map, startWith, tap } from 'rxjs';
 import { EventStream } from '../core/event-stream';
+import { RELOAD } from '../core/reload';
 import { SessionStore } from '../core/session';
 import { ThemeChoice, THEMES, type Theme } from '../core/theme-choice';
 import { Icon } from '../shared/icon/icon';
@@ -29,13 +30,14 @@ function deepest(route: ActivatedRouteSnapshot): ActivatedRouteSnapshot {
   imports: [A11yModule, Icon, Mark, MatButtonModule, MatMenuModule, RouterLink, RouterLinkActive, RouterOutlet],
   templateUrl: './shell.html',
   styleUrl: './shell.scss',
-  host: { '(document:keydown.escape)': 'drawerOpen.set(false)' },
+  host: { '(document:keydown.escape)': 'drawerOpen.set(false)', '(window:storage)': 'otherTab($event)' },
 })
 export class Shell {
   private readonly sessions = inject(SessionStore);
   private readonly router = inject(Router);
   private readonly events = inject(EventStream);
   private readonly themeChoice = inject(ThemeChoice);
+  private readonly reload = inject(RELOAD);
   private readonly main = viewChild.required<ElementRef<HTMLElement>>('main');
 
   protected readonly person = this.sessions.person;
@@ -60,6 +62,11 @@ export class Shell {
   protected skip(event: Event): void {
     event.preventDefault();
     this.main().nativeElement.focus();
+  }
+
+  protected otherTab(event: StorageEvent): void {
+    // What stands here was read as one person and must not go on as another.
+    if (this.sessions.isSomebodyElse(event)) this.reload();
   }
 
   protected choose(theme: Theme): void {

@@ -1,8 +1,20 @@
 import { Directive, inject, input, TemplateRef } from '@angular/core';
 
-/** What a cell of one column shows where text is not enough: `<ng-template lyCell="state" let-row>…</ng-template>`. */
+interface CellContext<T> {
+  readonly $implicit: T;
+}
+
+/**
+ * What a cell of one column shows where text is not enough:
+ * `<ng-template lyCell="state" [lyCellOf]="rows()" let-row>…</ng-template>`. The rows are named again only for their type.
+ */
 @Directive({ selector: 'ng-template[lyCell]' })
-export class CellTemplate {
-  readonly key = input.required<string>({ alias: 'lyCell' });
-  readonly template = inject<TemplateRef<{ $implicit: unknown }>>(TemplateRef);
+export class CellTemplate<T> {
+  readonly lyCell = input.required<string>();
+  readonly lyCellOf = input.required<readonly T[]>();
+  readonly template = inject<TemplateRef<CellContext<T>>>(TemplateRef);
+
+  static ngTemplateContextGuard<T>(_cell: CellTemplate<T>, context: unknown): context is CellContext<T> {
+    return typeof context === 'object';
+  }
 }

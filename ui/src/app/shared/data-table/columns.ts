@@ -7,7 +7,7 @@ export interface DataColumn<T> {
   /** Unit of its figures, said in the header. */
   readonly unit?: string;
   readonly value: (row: T) => Cell;
-  /** What is shown; absent: the value itself. For more than text, project `<ng-template lyCell="key" let-row>`. */
+  /** What is shown; absent: the value itself. For more than text, project a `lyCell`. */
   readonly text?: (row: T) => string;
   /** In the mono face, aligned at the right. */
   readonly figures?: boolean;

@@ -20,7 +20,7 @@ interface Row {
   imports: [CellTemplate, DataTable],
   template: `
     <ly-data-table label="Submissions" name="s" [rows]="rows" [columns]="columns" [key]="key" [link]="link">
-      <ng-template lyCell="cedant" let-row><b>{{ row.cedant }}!</b></ng-template>
+      <ng-template lyCell="cedant" [lyCellOf]="rows" let-row><b>{{ row.cedant }}!</b></ng-template>
     </ly-data-table>
   `,
 })

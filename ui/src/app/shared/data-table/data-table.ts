@@ -52,7 +52,7 @@ export class DataTable<T> {
   /** A row was chosen, by click or Enter; also where there is no link. */
   readonly opened = output<T>();
 
-  protected readonly cells = contentChildren(CellTemplate);
+  protected readonly cells = contentChildren<CellTemplate<T>>(CellTemplate);
   private readonly query = toSignal(this.address.query);
   private readonly limit = signal(STEP);
 
@@ -90,8 +90,8 @@ export class DataTable<T> {
     });
   }
 
-  protected templateOf(column: DataColumn<T>): CellTemplate | undefined {
-    return this.cells().find((cell) => cell.key() === column.key);
+  protected templateOf(column: DataColumn<T>): CellTemplate<T> | undefined {
+    return this.cells().find((cell) => cell.lyCell() === column.key);
   }
 
   protected sortBy(sort: Sort): void {
