@@ -1,14 +1,27 @@
 import { provideHttpClient, withInterceptors } from '@angular/common/http';
 import { ErrorHandler, provideBrowserGlobalErrorListeners, type ApplicationConfig } from '@angular/core';
-import { MAT_FORM_FIELD_DEFAULT_OPTIONS, type MatFormFieldDefaultOptions } from '@angular/material/form-field';
-import { provideRouter, TitleStrategy, withComponentInputBinding, withInMemoryScrolling, withRouterConfig } from '@angular/router';
+import {
+  MAT_FORM_FIELD_DEFAULT_OPTIONS,
+  type MatFormFieldDefaultOptions,
+} from '@angular/material/form-field';
+import {
+  provideRouter,
+  TitleStrategy,
+  withComponentInputBinding,
+  withInMemoryScrolling,
+  withRouterConfig,
+} from '@angular/router';
 import { DeskErrorHandler } from './core/error-handler';
 import { expiredSignIn, ownRequest, problems } from './core/interceptors';
 import { DeskTitle } from './core/title';
 import { routes } from './routes';
 
 // Dense fields keep their labels only when outlined.
-const fields: MatFormFieldDefaultOptions = { appearance: 'outline', subscriptSizing: 'dynamic', hideRequiredMarker: true };
+const fields: MatFormFieldDefaultOptions = {
+  appearance: 'outline',
+  subscriptSizing: 'dynamic',
+  hideRequiredMarker: true,
+};
 
 export const appConfig: ApplicationConfig = {
   providers: [

@@ -10,12 +10,28 @@ type Children = () => Promise<{ readonly routes: Routes }>;
 const PRICES = { prices: true };
 
 /** A feature of the desk: its folder says what is below it, this table who may come in. */
-function feature(path: string, title: string, permission: Permission, children: Children, data = {}): Routes[number] {
-  return { path, title, data, canActivate: [may(permission)], loadChildren: () => children().then((module) => module.routes) };
+function feature(
+  path: string,
+  title: string,
+  permission: Permission,
+  children: Children,
+  data = {},
+): Routes[number] {
+  return {
+    path,
+    title,
+    data,
+    canActivate: [may(permission)],
+    loadChildren: () => children().then((module) => module.routes),
+  };
 }
 
 export const routes: Routes = [
-  { path: 'sign-in', title: 'Sign in', loadComponent: () => import('./features/sign-in/sign-in').then((m) => m.SignIn) },
+  {
+    path: 'sign-in',
+    title: 'Sign in',
+    loadComponent: () => import('./features/sign-in/sign-in').then((m) => m.SignIn),
+  },
   {
     path: 'q/:token',
     title: 'Quotation',
@@ -28,10 +44,27 @@ export const routes: Routes = [
     children: [
       { path: '', pathMatch: 'full', redirectTo: () => homeOf(inject(SessionStore).session()) },
       feature('desk', 'Desk', 'desk.read', () => import('./features/desk/routes')),
-      feature('submissions', 'Submissions', 'submissions.read', () => import('./features/submissions/routes'), PRICES),
+      feature(
+        'submissions',
+        'Submissions',
+        'submissions.read',
+        () => import('./features/submissions/routes'),
+        PRICES,
+      ),
       feature('quotes', 'Quotes', 'quotes.read', () => import('./features/quotes/routes'), PRICES),
-      feature('referrals', 'Referrals', 'referrals.clear', () => import('./features/referrals/routes'), PRICES),
-      feature('catalogues', 'Event catalogues', 'catalogues.read', () => import('./features/catalogues/routes')),
+      feature(
+        'referrals',
+        'Referrals',
+        'referrals.clear',
+        () => import('./features/referrals/routes'),
+        PRICES,
+      ),
+      feature(
+        'catalogues',
+        'Event catalogues',
+        'catalogues.read',
+        () => import('./features/catalogues/routes'),
+      ),
       feature('basis', 'House basis', 'basis.read', () => import('./features/basis/routes')),
       feature('book', 'Book', 'book.read', () => import('./features/book/routes'), PRICES),
       feature('post-room', 'Post room', 'post-room.read', () => import('./features/post-room/routes')),
@@ -43,7 +76,11 @@ export const routes: Routes = [
         title: 'Not for you',
         loadComponent: () => import('./features/not-found/forbidden').then((m) => m.Forbidden),
       },
-      { path: '**', title: 'Not found', loadComponent: () => import('./features/not-found/not-found').then((m) => m.NotFound) },
+      {
+        path: '**',
+        title: 'Not found',
+        loadComponent: () => import('./features/not-found/not-found').then((m) => m.NotFound),
+      },
     ],
   },
 ];

@@ -9,6 +9,11 @@ export class AddressState {
 
   /** Sets some of the query and leaves the rest; null takes one away. The page stays where it is scrolled. */
   async set(changes: Readonly<Record<string, string | null>>): Promise<void> {
-    await this.router.navigate([], { queryParams: changes, queryParamsHandling: 'merge', replaceUrl: true, scroll: 'manual' });
+    await this.router.navigate([], {
+      queryParams: changes,
+      queryParamsHandling: 'merge',
+      replaceUrl: true,
+      scroll: 'manual',
+    });
   }
 }

@@ -22,14 +22,18 @@ describe('a call to a route of the contract', () => {
 
   it('leaves out of the query what is not given', () => {
     const { api, server } = open();
-    api.send(listCatalogueEvents, { params: { id: '1' }, query: { limit: 50, search: undefined } }).subscribe();
+    api
+      .send(listCatalogueEvents, { params: { id: '1' }, query: { limit: 50, search: undefined } })
+      .subscribe();
     server.expectOne('/api/v1/catalogue-versions/1/events?limit=50');
   });
 
   it('sends a file as a form and tells how far it is', () => {
     const { api, server } = open();
     const steps: UploadStep<unknown>[] = [];
-    api.upload(uploadCatalogueVersion, { params: { id: '1' } }, new File(['abc'], 'wind.csv')).subscribe((step) => steps.push(step));
+    api
+      .upload(uploadCatalogueVersion, { params: { id: '1' } }, new File(['abc'], 'wind.csv'))
+      .subscribe((step) => steps.push(step));
     const call = server.expectOne('/api/v1/catalogues/1/versions');
     expect((call.request.body as FormData).get('file')).toMatchObject({ name: 'wind.csv' });
     call.event({ type: 1, loaded: 2, total: 3 });

@@ -4,7 +4,9 @@ import { rxResource } from '@angular/core/rxjs-interop';
 import type { BodyInput, ParamsOf, QueryInput, ReplyOf, RouteSpec } from '@leanyear/contract/route';
 import { filter, map, type Observable } from 'rxjs';
 
-type Part<Name extends string, T> = [T] extends [undefined] ? { readonly [K in Name]?: undefined } : { readonly [K in Name]: T };
+type Part<Name extends string, T> = [T] extends [undefined]
+  ? { readonly [K in Name]?: undefined }
+  : { readonly [K in Name]: T };
 
 /** What a call to this route must bring, and no more. */
 export type CallArgs<R extends RouteSpec> = Part<'params', ParamsOf<R>> &
@@ -28,7 +30,9 @@ export function pathOf(spec: RouteSpec, params: unknown): string {
 }
 
 function queryOf(query: unknown): Record<string, string> {
-  const given = Object.entries((query ?? {}) as Record<string, unknown>).filter(([, value]) => value !== undefined && value !== null);
+  const given = Object.entries((query ?? {}) as Record<string, unknown>).filter(
+    ([, value]) => value !== undefined && value !== null,
+  );
   return Object.fromEntries(given.map(([name, value]) => [name, String(value)]));
 }
 
@@ -49,7 +53,7 @@ export class Api {
   upload<R extends RouteSpec>(spec: R, args: CallArgs<R>, file: File): Observable<UploadStep<ReplyOf<R>>> {
     const form = new FormData();
     // Fields before the file, so that the server can refuse before it has read the file.
-    for (const [name, value] of Object.entries((args.body ?? {}))) form.append(name, String(value));
+    for (const [name, value] of Object.entries(args.body ?? {})) form.append(name, String(value));
     form.append('file', file, file.name);
     return this.http
       .request<ReplyOf<R>>(spec.method.toUpperCase(), pathOf(spec, args.params), {
@@ -60,7 +64,8 @@ export class Api {
       })
       .pipe(
         map((event): UploadStep<ReplyOf<R>> | null => {
-          if (event.type === HttpEventType.UploadProgress) return { sent: event.loaded, total: event.total ?? file.size };
+          if (event.type === HttpEventType.UploadProgress)
+            return { sent: event.loaded, total: event.total ?? file.size };
           return event.type === HttpEventType.Response ? { reply: event.body as ReplyOf<R> } : null;
         }),
         filter((step) => step !== null),
@@ -71,7 +76,10 @@ export class Api {
    * What a route answers, read again whenever `args` change; undefined args read nothing. Call it where injection works.
    * In templates ask `hasValue()` first: `value()` of a failed resource throws.
    */
-  resource<R extends RouteSpec>(spec: R, args: () => CallArgs<R> | undefined): ResourceRef<ReplyOf<R> | undefined> {
+  resource<R extends RouteSpec>(
+    spec: R,
+    args: () => CallArgs<R> | undefined,
+  ): ResourceRef<ReplyOf<R> | undefined> {
     return rxResource({ params: args, stream: ({ params }) => this.send(spec, params as CallArgs<R>) });
   }
 

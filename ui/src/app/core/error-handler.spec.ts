@@ -12,7 +12,9 @@ function handle(error: unknown) {
 describe('an error that nobody caught', () => {
   it('is said with the id under which the server logged it', () => {
     const error = new ProblemError(500, 'Our error', 'Something went wrong on our side.', [], [], 'e-17');
-    expect(handle(error)).toMatchObject([{ kind: 'fault', text: 'Something went wrong on our side.', errorId: 'e-17' }]);
+    expect(handle(error)).toMatchObject([
+      { kind: 'fault', text: 'Something went wrong on our side.', errorId: 'e-17' },
+    ]);
   });
 
   it('offers to load a page again that is older than its server', () => {

@@ -16,12 +16,20 @@ export class DeskErrorHandler implements ErrorHandler {
     const thrown: unknown = error instanceof Error && 'rejection' in error ? error.rejection : error;
     const problem = asProblem(thrown);
     if (STALE_PAGE.test(problem.message)) {
-      this.notices.fault('Leanyear has been renewed since this page was opened.', null, { label: 'Load it again', act: this.reload });
+      this.notices.fault('Leanyear has been renewed since this page was opened.', null, {
+        label: 'Load it again',
+        act: this.reload,
+      });
       return;
     }
     if (problem.status === -1) reportError(thrown);
     // Asking again for the password was given up: the page says so itself.
     if (problem.status === 401) return;
-    this.notices.fault(problem.status === -1 ? 'Something went wrong on this page. If it goes on, load it again.' : problem.message, problem.errorId);
+    this.notices.fault(
+      problem.status === -1
+        ? 'Something went wrong on this page. If it goes on, load it again.'
+        : problem.message,
+      problem.errorId,
+    );
   }
 }

@@ -60,7 +60,8 @@ describe('the stream of what has moved', () => {
     const [first, second] = [tab(), tab()];
     await jest.advanceTimersByTimeAsync(0);
     expect(FakeSource.opened).toHaveLength(1);
-    for (const data of [RUN, { topic: 'mail', id: 'm' }, { topic: 'nonsense' }]) FakeSource.opened[0]?.onmessage?.({ data: JSON.stringify(data) });
+    for (const data of [RUN, { topic: 'mail', id: 'm' }, { topic: 'nonsense' }])
+      FakeSource.opened[0]?.onmessage?.({ data: JSON.stringify(data) });
     FakeSource.opened[0]?.onmessage?.({ data: 'not json' });
     expect(first.told).toEqual([RUN]);
     expect(second.told).toEqual([RUN]);

@@ -27,7 +27,9 @@ function toldBy(data: unknown): DeskEvent | null {
   if (typeof data !== 'string') return null;
   try {
     const parsed = JSON.parse(data) as Partial<DeskEvent> | null;
-    return parsed !== null && STREAM_TOPICS.some((topic) => topic === parsed.topic) ? (parsed as DeskEvent) : null;
+    return parsed !== null && STREAM_TOPICS.some((topic) => topic === parsed.topic)
+      ? (parsed as DeskEvent)
+      : null;
   } catch {
     return null;
   }

@@ -17,7 +17,10 @@ export function may(permission: Permission): CanActivateFn {
     const router = inject(Router);
     const sessions = inject(SessionStore);
     await sessions.load();
-    return sessions.may(permission) || new RedirectCommand(router.createUrlTree(['/forbidden']), { browserUrl: state.url });
+    return (
+      sessions.may(permission) ||
+      new RedirectCommand(router.createUrlTree(['/forbidden']), { browserUrl: state.url })
+    );
   };
 }
 

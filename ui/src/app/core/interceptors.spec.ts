@@ -16,7 +16,10 @@ const settle = (): Promise<void> => new Promise((resolve) => setTimeout(resolve,
 
 function open() {
   TestBed.configureTestingModule({
-    providers: [provideHttpClient(withInterceptors([problems, expiredSignIn, ownRequest])), provideHttpClientTesting()],
+    providers: [
+      provideHttpClient(withInterceptors([problems, expiredSignIn, ownRequest])),
+      provideHttpClientTesting(),
+    ],
   });
   const sessions = TestBed.inject(SessionStore);
   sessions.take(sessionOf('underwriter'));

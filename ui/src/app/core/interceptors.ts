@@ -28,5 +28,7 @@ export const expiredSignIn: HttpInterceptorFn = (request, next) => {
 /** Turns every failure into a ProblemError, at the outermost place. */
 export const problems: HttpInterceptorFn = (request, next) =>
   next(request).pipe(
-    catchError((error: unknown) => throwError(() => (error instanceof HttpErrorResponse ? problemOf(error) : error))),
+    catchError((error: unknown) =>
+      throwError(() => (error instanceof HttpErrorResponse ? problemOf(error) : error)),
+    ),
   );

@@ -55,13 +55,23 @@ function pairsOf<K extends string>(value: unknown, key: K): ({ message: string }
   if (!Array.isArray(value)) return [];
   return value
     .filter(isRecord)
-    .map((one) => ({ [key]: textOf(one[key]), message: textOf(one['message']) }) as { message: string } & Record<K, string>);
+    .map(
+      (one) =>
+        ({ [key]: textOf(one[key]), message: textOf(one['message']) }) as { message: string } & Record<
+          K,
+          string
+        >,
+    );
 }
 
 /** Reads problem details (RFC 9457) out of a failed answer; says so in words where none came. */
 export function problemOf(answer: HttpErrorResponse): ProblemError {
   if (answer.status === 0) {
-    return new ProblemError(0, 'No connection', 'The desk cannot be reached. Nothing was lost: try again once you are connected.');
+    return new ProblemError(
+      0,
+      'No connection',
+      'The desk cannot be reached. Nothing was lost: try again once you are connected.',
+    );
   }
   const body = bodyOf(answer);
   const wait = Number(answer.headers.get('Retry-After') ?? '');
@@ -84,5 +94,9 @@ export function asProblem(error: unknown): ProblemError {
   if (error instanceof HttpErrorResponse) return problemOf(error);
   // Angular wraps what is not an Error in one that names it as its cause.
   if (error instanceof Error && error.cause instanceof ProblemError) return error.cause;
-  return new ProblemError(-1, 'Something went wrong on this page', error instanceof Error ? error.message : String(error));
+  return new ProblemError(
+    -1,
+    'Something went wrong on this page',
+    error instanceof Error ? error.message : String(error),
+  );
 }

@@ -25,7 +25,15 @@ async function open(role: Role, url = '/quotes') {
     { path: 'people', component: Page },
   ];
   TestBed.configureTestingModule({
-    providers: [{ provide: RELOAD, useValue: reload }, provideHttpClient(), provideHttpClientTesting(), provideRouter([{ path: 'sign-in', component: Page }, { path: '', component: Shell, children }])],
+    providers: [
+      { provide: RELOAD, useValue: reload },
+      provideHttpClient(),
+      provideHttpClientTesting(),
+      provideRouter([
+        { path: 'sign-in', component: Page },
+        { path: '', component: Shell, children },
+      ]),
+    ],
   });
   TestBed.inject(SessionStore).take(sessionOf(role));
   const router = await RouterTestingHarness.create(url);
@@ -34,7 +42,10 @@ async function open(role: Role, url = '/quotes') {
 
 describe('the frame around the pages', () => {
   it.each([
-    ['underwriter', ['Desk', 'Submissions', 'Quotes', 'Book', 'House basis', 'Event catalogues', 'Post room', 'People']],
+    [
+      'underwriter',
+      ['Desk', 'Submissions', 'Quotes', 'Book', 'House basis', 'Event catalogues', 'Post room', 'People'],
+    ],
     ['broker', ['Quotations']],
     ['administrator', ['Desk', 'Post room', 'People', 'Audit trail']],
   ] as const)('shows a person in the role of %s where they may go', async (role, places) => {
@@ -60,7 +71,8 @@ describe('the frame around the pages', () => {
 
   it('loads again when somebody else signs in, in another tab', async () => {
     await open('underwriter');
-    const keep = (newValue: string): boolean => window.dispatchEvent(new StorageEvent('storage', { key: 'leanyear.signed-in', newValue }));
+    const keep = (newValue: string): boolean =>
+      window.dispatchEvent(new StorageEvent('storage', { key: 'leanyear.signed-in', newValue }));
     keep(sessionOf('underwriter').person.id);
     expect(reload).not.toHaveBeenCalled();
     keep('somebody-else');

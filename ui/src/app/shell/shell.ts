@@ -1,9 +1,24 @@
 import { A11yModule } from '@angular/cdk/a11y';
-import { ChangeDetectionStrategy, Component, computed, type ElementRef, inject, signal, viewChild } from '@angular/core';
+import {
+  ChangeDetectionStrategy,
+  Component,
+  computed,
+  type ElementRef,
+  inject,
+  signal,
+  viewChild,
+} from '@angular/core';
 import { toSignal } from '@angular/core/rxjs-interop';
 import { MatButtonModule } from '@angular/material/button';
 import { MatMenuModule } from '@angular/material/menu';
-import { NavigationEnd, Router, RouterLink, RouterLinkActive, RouterOutlet, type ActivatedRouteSnapshot } from '@angular/router';
+import {
+  NavigationEnd,
+  Router,
+  RouterLink,
+  RouterLinkActive,
+  RouterOutlet,
+  type ActivatedRouteSnapshot,
+} from '@angular/router';
 import { filter, map, startWith, tap } from 'rxjs';
 import { EventStream } from '../core/event-stream';
 import { RELOAD } from '../core/reload';
@@ -27,7 +42,16 @@ function deepest(route: ActivatedRouteSnapshot): ActivatedRouteSnapshot {
 @Component({
   selector: 'ly-shell',
   changeDetection: ChangeDetectionStrategy.OnPush,
-  imports: [A11yModule, Icon, Mark, MatButtonModule, MatMenuModule, RouterLink, RouterLinkActive, RouterOutlet],
+  imports: [
+    A11yModule,
+    Icon,
+    Mark,
+    MatButtonModule,
+    MatMenuModule,
+    RouterLink,
+    RouterLinkActive,
+    RouterOutlet,
+  ],
   templateUrl: './shell.html',
   styleUrl: './shell.scss',
   host: { '(document:keydown.escape)': 'drawerOpen.set(false)', '(window:storage)': 'otherTab($event)' },
@@ -42,7 +66,9 @@ export class Shell {
 
   protected readonly person = this.sessions.person;
   protected readonly places = computed(() =>
-    PLACES.map((group) => group.filter((place) => this.sessions.may(place.permission))).filter((group) => group.length > 0),
+    PLACES.map((group) => group.filter((place) => this.sessions.may(place.permission))).filter(
+      (group) => group.length > 0,
+    ),
   );
   protected readonly drawerOpen = signal(false);
   protected readonly themes = THEMES.map((theme) => ({ theme, ...THEME_WORDS[theme] }));

@@ -19,7 +19,11 @@ const settle = (): Promise<void> => new Promise((resolve) => setTimeout(resolve,
 async function open() {
   localStorage.clear();
   TestBed.configureTestingModule({
-    providers: [provideHttpClient(withInterceptors([problems])), provideHttpClientTesting(), provideRouter([{ path: '**', component: Page }])],
+    providers: [
+      provideHttpClient(withInterceptors([problems])),
+      provideHttpClientTesting(),
+      provideRouter([{ path: '**', component: Page }]),
+    ],
   });
   TestBed.inject(SessionStore).take(sessionOf('underwriter'));
   const fixture = TestBed.createComponent(Page);
@@ -32,7 +36,9 @@ describe('signing in again over a page', () => {
   it('signs in the same person, after a slip too', async () => {
     const { answer, dialog, server } = await open();
     await dialog.signIn('slip');
-    server.expectOne('/api/v1/session').flush({ detail: 'E-mail and password do not fit together.' }, { status: 401, statusText: '' });
+    server
+      .expectOne('/api/v1/session')
+      .flush({ detail: 'E-mail and password do not fit together.' }, { status: 401, statusText: '' });
     await settle();
     expect(await dialog.refusal()).toBe('E-mail and password do not fit together.');
     await dialog.signIn('right');

@@ -77,6 +77,12 @@ export class SignInAgain {
 
 /** Whether the person has signed in again. */
 export async function signInAgain(injector: Injector): Promise<boolean> {
-  const dialog = injector.get(MatDialog).open<SignInAgain, undefined, boolean>(SignInAgain, { disableClose: true, width: '26rem', autoFocus: 'input[type=password]' });
+  const dialog = injector
+    .get(MatDialog)
+    .open<SignInAgain, undefined, boolean>(SignInAgain, {
+      disableClose: true,
+      width: '26rem',
+      autoFocus: 'input[type=password]',
+    });
   return (await firstValueFrom(dialog.afterClosed())) ?? false;
 }

@@ -11,7 +11,11 @@ import { StatePanel } from '../../shared/state-panel/state-panel';
     <div class="page">
       <h1>No such page</h1>
       <div class="sheet">
-        <ly-state-panel kind="missing" title="There is nothing at this address" detail="It may have moved, or the address has a slip in it.">
+        <ly-state-panel
+          kind="missing"
+          title="There is nothing at this address"
+          detail="It may have moved, or the address has a slip in it."
+        >
           <a mat-flat-button routerLink="/">Go to where you begin</a>
         </ly-state-panel>
       </div>

@@ -20,7 +20,7 @@ export type DemoAccount = ReplyOf<typeof demoAccounts>[number];
         @for (account of list(); track account.email) {
           <li>
             <button type="button" (click)="chosen.emit(account)">
-              <span>{{ account.name }}</span>
+              <span>{{ account.name }}</span>&ngsp;
               <span class="role">{{ account.role }}</span>
             </button>
           </li>
@@ -75,6 +75,8 @@ export type DemoAccount = ReplyOf<typeof demoAccounts>[number];
 })
 export class DemoAccounts {
   readonly chosen = output<DemoAccount>();
-  private readonly accounts = inject(Api).resource(demoAccounts, () => ({ context: new HttpContext().set(SIGN_IN, 'none') }));
+  private readonly accounts = inject(Api).resource(demoAccounts, () => ({
+    context: new HttpContext().set(SIGN_IN, 'none'),
+  }));
   protected readonly list = computed(() => (this.accounts.hasValue() ? this.accounts.value() : []));
 }

@@ -36,7 +36,9 @@ export class SignInHarness extends ComponentHarness {
   async people(): Promise<string[]> {
     const words = await this.locatorForAll('ly-demo-accounts button span')();
     const texts = await parallel(() => words.map((word) => word.text()));
-    return Array.from({ length: texts.length / 2 }, (_, index) => texts.slice(index * 2, index * 2 + 2).join(', '));
+    return Array.from({ length: texts.length / 2 }, (_, index) =>
+      texts.slice(index * 2, index * 2 + 2).join(', '),
+    );
   }
 
   async choose(person: string): Promise<void> {

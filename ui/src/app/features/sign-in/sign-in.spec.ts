@@ -23,7 +23,13 @@ async function open(url = '/sign-in', people: readonly object[] = []) {
     providers: [
       provideHttpClient(withInterceptors([problems])),
       provideHttpClientTesting(),
-      provideRouter([{ path: 'sign-in', component: SignIn }, { path: '**', component: Inside }], withComponentInputBinding()),
+      provideRouter(
+        [
+          { path: 'sign-in', component: SignIn },
+          { path: '**', component: Inside },
+        ],
+        withComponentInputBinding(),
+      ),
     ],
   });
   const server = TestBed.inject(HttpTestingController);
@@ -48,20 +54,26 @@ describe('signing in', () => {
     expect(location.path()).toBe('/quotes/7?tab=layers');
   });
 
-  it.each(['//evil.example', 'https://evil.example', '/\\evil.example'])('never goes on to %s', async (elsewhere) => {
-    const { page, server, location } = await open(`/sign-in?next=${encodeURIComponent(elsewhere)}`);
-    await page.type('tom@brokers.example', 'a long password');
-    await page.submit();
-    server.expectOne('/api/v1/session').flush(sessionOf('broker'));
-    await settle();
-    expect(location.path()).toBe('/broker');
-  });
+  it.each(['//evil.example', 'https://evil.example', '/\\evil.example'])(
+    'never goes on to %s',
+    async (elsewhere) => {
+      const { page, server, location } = await open(`/sign-in?next=${encodeURIComponent(elsewhere)}`);
+      await page.type('tom@brokers.example', 'a long password');
+      await page.submit();
+      server.expectOne('/api/v1/session').flush(sessionOf('broker'));
+      await settle();
+      expect(location.path()).toBe('/broker');
+    },
+  );
 
   it('says beside the fields what is missing, and asks the server nothing', async () => {
     const { page, server } = await open();
     await page.type('marit', '');
     await page.submit();
-    expect(await page.faults()).toEqual(['This is not an e-mail address; one looks like name@firm.example.', 'Enter your password.']);
+    expect(await page.faults()).toEqual([
+      'This is not an e-mail address; one looks like name@firm.example.',
+      'Enter your password.',
+    ]);
     server.expectNone('/api/v1/session');
   });
 
@@ -69,13 +81,25 @@ describe('signing in', () => {
     const { page, server } = await open();
     await page.type('marit@leanyear.example', 'guess');
     await page.submit();
-    server.expectOne('/api/v1/session').flush({ detail: 'This account cannot be signed in to for now. Try again in 5 minutes.' }, { status: 429, statusText: '' });
+    server
+      .expectOne('/api/v1/session')
+      .flush(
+        { detail: 'This account cannot be signed in to for now. Try again in 5 minutes.' },
+        { status: 429, statusText: '' },
+      );
     await settle();
     expect(await page.refusal()).toContain('Try again in 5 minutes.');
   });
 
   it('fills the form from the people of the demo', async () => {
-    const { page } = await open('/sign-in', [{ name: 'Marit Holm', email: 'marit@leanyear.example', role: 'underwriter', password: 'lean-and-plenty' }]);
+    const { page } = await open('/sign-in', [
+      {
+        name: 'Marit Holm',
+        email: 'marit@leanyear.example',
+        role: 'underwriter',
+        password: 'lean-and-plenty',
+      },
+    ]);
     expect(await page.people()).toEqual(['Marit Holm, underwriter']);
     await page.choose('Marit Holm, underwriter');
     expect(await page.typed()).toEqual(['marit@leanyear.example', 'lean-and-plenty']);

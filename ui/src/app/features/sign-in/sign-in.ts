@@ -20,7 +20,16 @@ function ownPath(next: string | undefined): string | null {
 @Component({
   selector: 'ly-sign-in',
   changeDetection: ChangeDetectionStrategy.OnPush,
-  imports: [DemoAccounts, Icon, Mark, MatButtonModule, MatFormFieldModule, MatInputModule, ReactiveFormsModule, Years],
+  imports: [
+    DemoAccounts,
+    Icon,
+    Mark,
+    MatButtonModule,
+    MatFormFieldModule,
+    MatInputModule,
+    ReactiveFormsModule,
+    Years,
+  ],
   templateUrl: './sign-in.html',
   styleUrl: './sign-in.scss',
 })

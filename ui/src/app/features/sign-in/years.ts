@@ -34,7 +34,13 @@ function years(): Year[] {
         <line class="rule" x1="0" [attr.x2]="count" [attr.y1]="rule" [attr.y2]="rule" />
       }
       @for (year of years; track year.x) {
-        <line [class.lean]="year.lean" [attr.x1]="year.x" [attr.x2]="year.x" y1="100" [attr.y2]="100 - year.height" />
+        <line
+          [class.lean]="year.lean"
+          [attr.x1]="year.x"
+          [attr.x2]="year.x"
+          y1="100"
+          [attr.y2]="100 - year.height"
+        />
       }
     </svg>
   `,

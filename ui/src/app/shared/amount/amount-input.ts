@@ -1,5 +1,11 @@
 import { Directive, ElementRef, forwardRef, inject } from '@angular/core';
-import { NG_VALIDATORS, NG_VALUE_ACCESSOR, type ControlValueAccessor, type ValidationErrors, type Validator } from '@angular/forms';
+import {
+  NG_VALIDATORS,
+  NG_VALUE_ACCESSOR,
+  type ControlValueAccessor,
+  type ValidationErrors,
+  type Validator,
+} from '@angular/forms';
 import { LOCALE } from '../../core/locale';
 import { exactAmount } from '../format/numbers';
 import { parseAmount, typedAmount } from './parse-amount';
@@ -70,7 +76,8 @@ export class AmountInput implements ControlValueAccessor, Validator {
 
   private show(): void {
     const parsed = this.text === '' ? null : parseAmount(this.text);
-    this.element.value = parsed !== null && 'text' in parsed ? typedAmount(parsed.text, this.locale) : this.text;
+    this.element.value =
+      parsed !== null && 'text' in parsed ? typedAmount(parsed.text, this.locale) : this.text;
     this.element.title = parsed !== null && 'text' in parsed ? exactAmount(parsed.text, this.locale) : '';
   }
 }

@@ -6,7 +6,8 @@ import { exactAmount, shortAmount } from '../format/numbers';
 @Component({
   selector: 'ly-amount',
   changeDetection: ChangeDetectionStrategy.OnPush,
-  template: `<span aria-hidden="true">{{ short() }}</span><span class="unseen">{{ exact() }}</span>`,
+  template: `<span aria-hidden="true">{{ short() }}</span
+    ><span class="unseen">{{ exact() }}</span>`,
   host: { class: 'figures', '[attr.title]': 'exact()', '(copy)': 'copy($event)' },
   styles: `
     :host {

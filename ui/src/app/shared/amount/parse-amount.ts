@@ -1,7 +1,17 @@
 export type Parsed = { readonly text: string } | { readonly fault: string };
 
 /** How many places each ending moves the decimal point. */
-const ENDINGS: Readonly<Record<string, number>> = { '': 0, k: 3, thousand: 3, m: 6, mn: 6, million: 6, b: 9, bn: 9, billion: 9 };
+const ENDINGS: Readonly<Record<string, number>> = {
+  '': 0,
+  k: 3,
+  thousand: 3,
+  m: 6,
+  mn: 6,
+  million: 6,
+  b: 9,
+  bn: 9,
+  billion: 9,
+};
 const MOST_DIGITS = 15;
 const MOST_PLACES = 4;
 
@@ -19,10 +29,16 @@ function shift(whole: string, places: string, by: number): string {
  * Commas and spaces group; the point divides.
  */
 export function parseAmount(typed: string): Parsed {
-  const match = /^(\d*)(?:\.(\d*))?([a-z]*)$/.exec(typed.trim().toLowerCase().replace(/[,\s'\u00a0\u202f_]/g, ''));
+  const match = /^(\d*)(?:\.(\d*))?([a-z]*)$/.exec(
+    typed
+      .trim()
+      .toLowerCase()
+      .replace(/[,\s'\u00a0\u202f_]/g, ''),
+  );
   const [, whole = '', places = '', ending = ''] = match ?? [];
   if (/^[-\u2212]/.test(typed.trim())) return { fault: 'An amount is 0 or more.' };
-  if (match === null || whole + places === '') return { fault: 'Type an amount such as 12.5m, 250k or 12,500,000.' };
+  if (match === null || whole + places === '')
+    return { fault: 'Type an amount such as 12.5m, 250k or 12,500,000.' };
   const by = ENDINGS[ending];
   if (by === undefined) return { fault: `“${ending}” is not known: k is thousand, m million, bn billion.` };
   if (/,\d{1,2}$/.test(typed.trim())) return { fault: 'Use a point for decimals; commas group thousands.' };
@@ -38,10 +54,17 @@ export function typedAmount(text: string, locale: string): string {
   const match = /^(\d+)(?:\.(\d+))?$/.exec(text);
   if (match === null) return text;
   const [, whole = '', places = ''] = match;
-  for (const [letters, by] of [['bn', 9], ['m', 6], ['k', 3]] as const) {
+  for (const [letters, by] of [
+    ['bn', 9],
+    ['m', 6],
+    ['k', 3],
+  ] as const) {
     const head = whole.slice(0, -by);
     const tail = whole.slice(-by).replace(/0+$/, '');
-    if (head !== '' && places === '' && tail.length <= 3) return tail === '' ? head + letters : `${head}.${tail}${letters}`;
+    if (head !== '' && places === '' && tail.length <= 3)
+      return tail === '' ? head + letters : `${head}.${tail}${letters}`;
   }
-  return new Intl.NumberFormat(locale, { maximumFractionDigits: 4 }).format(text as Intl.StringNumericLiteral);
+  return new Intl.NumberFormat(locale, { maximumFractionDigits: 4 }).format(
+    text as Intl.StringNumericLiteral,
+  );
 }

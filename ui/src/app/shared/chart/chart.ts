@@ -6,7 +6,11 @@ import { inkOf, type Ink } from './ink';
 export type ChartOption = (ink: Ink) => EChartsCoreOption;
 
 /** Draws a chart into its element, in the theme's ink; draws it again when the data or the scheme change. */
-@Directive({ selector: '[lyChart]', exportAs: 'lyChart', host: { role: 'img', '[attr.aria-label]': 'description()' } })
+@Directive({
+  selector: '[lyChart]',
+  exportAs: 'lyChart',
+  host: { role: 'img', '[attr.aria-label]': 'description()' },
+})
 export class Chart {
   readonly option = input.required<ChartOption>({ alias: 'lyChart' });
   /** What the chart shows, for those who hear it. */
@@ -26,7 +30,10 @@ export class Chart {
     });
     effect(() => {
       dark();
-      this.chart()?.setOption({ textStyle: { fontFamily: 'inherit' }, ...this.option()(inkOf(this.element)) }, { notMerge: false, replaceMerge: ['series'] });
+      this.chart()?.setOption(
+        { textStyle: { fontFamily: 'inherit' }, ...this.option()(inkOf(this.element)) },
+        { notMerge: false, replaceMerge: ['series'] },
+      );
     });
     void import('./echarts').then(({ init }) => {
       if (gone) return;
@@ -38,6 +45,8 @@ export class Chart {
   /** The chart as a picture, twice as fine as on the screen. */
   png(): string | null {
     const chart = this.chart();
-    return chart?.getDataURL({ type: 'png', pixelRatio: 2, backgroundColor: inkOf(this.element).sheet }) ?? null;
+    return (
+      chart?.getDataURL({ type: 'png', pixelRatio: 2, backgroundColor: inkOf(this.element).sheet }) ?? null
+    );
   }
 }

@@ -4,6 +4,13 @@ import { AxisPointerComponent, GraphicComponent, GridComponent, TooltipComponent
 import * as echarts from 'echarts/core';
 import { CanvasRenderer } from 'echarts/renderers';
 
-echarts.use([AxisPointerComponent, CanvasRenderer, GraphicComponent, GridComponent, LineChart, TooltipComponent]);
+echarts.use([
+  AxisPointerComponent,
+  CanvasRenderer,
+  GraphicComponent,
+  GridComponent,
+  LineChart,
+  TooltipComponent,
+]);
 
 export const { init } = echarts;

@@ -11,8 +11,10 @@ import type { Confirmed, Question } from './confirm';
 const FEWEST = 3;
 const MOST = 4000;
 
-const reasoned: ValidatorFn = (control) => (String(control.value).trim().length < FEWEST ? { reason: 'Say why, in a few words.' } : null);
-const shortEnough: ValidatorFn = (control) => (String(control.value).length > MOST ? { long: 'This is longer than 4,000 characters.' } : null);
+const reasoned: ValidatorFn = (control) =>
+  String(control.value).trim().length < FEWEST ? { reason: 'Say why, in a few words.' } : null;
+const shortEnough: ValidatorFn = (control) =>
+  String(control.value).length > MOST ? { long: 'This is longer than 4,000 characters.' } : null;
 
 @Component({
   selector: 'ly-confirm-dialog',

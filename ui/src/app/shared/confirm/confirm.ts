@@ -26,7 +26,11 @@ export class Confirm {
 
   /** The note given, or null for not doing it. */
   async ask(question: Question): Promise<Confirmed | null> {
-    const dialog = this.dialogs.open<ConfirmDialog, Question, Confirmed>(ConfirmDialog, { data: question, width: '30rem', autoFocus: 'dialog' });
+    const dialog = this.dialogs.open<ConfirmDialog, Question, Confirmed>(ConfirmDialog, {
+      data: question,
+      width: '30rem',
+      autoFocus: 'dialog',
+    });
     return (await firstValueFrom(dialog.afterClosed())) ?? null;
   }
 }

@@ -2,9 +2,13 @@ import { csvOf, tabbedOf } from './csv';
 
 describe('rows that leave the desk', () => {
   it('quotes what needs it and keeps figures plain', () => {
-    expect(csvOf([['layer', 'limit'], ['first, "working"', 12500000.5], [null, -3]])).toBe(
-      'layer,limit\r\n"first, ""working""",12500000.5\r\n,-3\r\n',
-    );
+    expect(
+      csvOf([
+        ['layer', 'limit'],
+        ['first, "working"', 12500000.5],
+        [null, -3],
+      ]),
+    ).toBe('layer,limit\r\n"first, ""working""",12500000.5\r\n,-3\r\n');
   });
 
   it('lets no text become a formula', () => {

@@ -19,7 +19,13 @@ export function csvOf(rows: readonly (readonly Cell[])[]): string {
 /** Rows as a spreadsheet takes them from the clipboard. */
 export function tabbedOf(rows: readonly (readonly Cell[])[]): string {
   return rows
-    .map((row) => row.map((cell) => (typeof cell === 'number' ? String(cell) : safe((cell ?? '').replace(/[\t\r\n]+/g, ' ')))).join('\t'))
+    .map((row) =>
+      row
+        .map((cell) =>
+          typeof cell === 'number' ? String(cell) : safe((cell ?? '').replace(/[\t\r\n]+/g, ' ')),
+        )
+        .join('\t'),
+    )
     .join('\n');
 }
 

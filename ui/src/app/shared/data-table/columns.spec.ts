@@ -6,7 +6,12 @@ interface Row {
 }
 
 const name: DataColumn<Row> = { key: 'name', header: 'Layer', value: (row) => row.name };
-const limit: DataColumn<Row> = { key: 'limit', header: 'Limit', value: (row) => row.limit, text: (row) => `${(row.limit ?? 0) / 1e6}m` };
+const limit: DataColumn<Row> = {
+  key: 'limit',
+  header: 'Limit',
+  value: (row) => row.limit,
+  text: (row) => `${(row.limit ?? 0) / 1e6}m`,
+};
 const ROWS: readonly Row[] = [
   { name: 'Layer 10', limit: 5e6 },
   { name: 'layer 2', limit: null },
@@ -15,7 +20,11 @@ const ROWS: readonly Row[] = [
 
 describe('rows of a table', () => {
   it('sort words by their numbers, whatever their case', () => {
-    expect(ordered(ROWS, name, 'asc', 'en').map((row) => row.name)).toEqual(['Layer 1', 'layer 2', 'Layer 10']);
+    expect(ordered(ROWS, name, 'asc', 'en').map((row) => row.name)).toEqual([
+      'Layer 1',
+      'layer 2',
+      'Layer 10',
+    ]);
   });
 
   it.each(['asc', 'desc'] as const)('keep what is missing last when sorted %s', (direction) => {

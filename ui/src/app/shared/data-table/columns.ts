@@ -26,14 +26,21 @@ export function textOf<T>(column: DataColumn<T>, row: T): string {
 }
 
 /** Rows in order; those without a value come last either way, and equals keep their order. */
-export function ordered<T>(rows: readonly T[], column: DataColumn<T>, direction: Direction, locale: string): readonly T[] {
+export function ordered<T>(
+  rows: readonly T[],
+  column: DataColumn<T>,
+  direction: Direction,
+  locale: string,
+): readonly T[] {
   const words = new Intl.Collator(locale, { numeric: true, sensitivity: 'base' });
   const sign = direction === 'asc' ? 1 : -1;
   return [...rows].sort((left, right) => {
     const a = column.value(left);
     const b = column.value(right);
     if (a === null || b === null) return a === b ? 0 : a === null ? 1 : -1;
-    return sign * (typeof a === 'number' && typeof b === 'number' ? a - b : words.compare(String(a), String(b)));
+    return (
+      sign * (typeof a === 'number' && typeof b === 'number' ? a - b : words.compare(String(a), String(b)))
+    );
   });
 }
 
@@ -42,7 +49,9 @@ export function found<T>(rows: readonly T[], columns: readonly DataColumn<T>[], 
   const words = find.toLowerCase().split(/\s+/).filter(Boolean);
   if (words.length === 0) return rows;
   return rows.filter((row) => {
-    const text = columns.map((column) => `${textOf(column, row)} ${String(column.value(row) ?? '')}`.toLowerCase()).join('\n');
+    const text = columns
+      .map((column) => `${textOf(column, row)} ${String(column.value(row) ?? '')}`.toLowerCase())
+      .join('\n');
     return words.every((word) => text.includes(word));
   });
 }

@@ -9,7 +9,9 @@ export class DataTableHarness extends ComponentHarness {
     const columns = (await this.headers()).length;
     const cells = await this.locatorForAll('td[mat-cell]')();
     const texts = await parallel(() => cells.map((cell) => cell.text()));
-    return Array.from({ length: texts.length / columns }, (_, row) => texts.slice(row * columns, (row + 1) * columns).join(' | '));
+    return Array.from({ length: texts.length / columns }, (_, row) =>
+      texts.slice(row * columns, (row + 1) * columns).join(' | '),
+    );
   }
 
   async headers(): Promise<string[]> {

@@ -20,7 +20,9 @@ interface Row {
   imports: [CellTemplate, DataTable],
   template: `
     <ly-data-table label="Submissions" name="s" [rows]="rows" [columns]="columns" [key]="key" [link]="link">
-      <ng-template lyCell="cedant" [lyCellOf]="rows" let-row><b>{{ row.cedant }}!</b></ng-template>
+      <ng-template lyCell="cedant" [lyCellOf]="rows" let-row
+        ><b>{{ row.cedant }}!</b></ng-template
+      >
     </ly-data-table>
   `,
 })
@@ -89,7 +91,11 @@ describe('a table', () => {
   });
 
   it('draws many rows in steps', async () => {
-    const many = Array.from({ length: 450 }, (_, index) => ({ id: `R${index}`, cedant: 'x', premium: index }));
+    const many = Array.from({ length: 450 }, (_, index) => ({
+      id: `R${index}`,
+      cedant: 'x',
+      premium: index,
+    }));
     const { table } = await open(many);
     expect(await table.rows()).toHaveLength(200);
     await table.showMore();

@@ -1,5 +1,16 @@
 import { NgTemplateOutlet } from '@angular/common';
-import { ChangeDetectionStrategy, Component, computed, contentChildren, effect, ElementRef, inject, input, output, signal } from '@angular/core';
+import {
+  ChangeDetectionStrategy,
+  Component,
+  computed,
+  contentChildren,
+  effect,
+  ElementRef,
+  inject,
+  input,
+  output,
+  signal,
+} from '@angular/core';
 import { toSignal } from '@angular/core/rxjs-interop';
 import { MatButtonModule } from '@angular/material/button';
 import { MatCheckboxModule } from '@angular/material/checkbox';
@@ -26,7 +37,16 @@ const STEP = 200;
 @Component({
   selector: 'ly-data-table',
   changeDetection: ChangeDetectionStrategy.OnPush,
-  imports: [Icon, MatButtonModule, MatCheckboxModule, MatMenuModule, MatSortModule, MatTableModule, NgTemplateOutlet, RouterLink],
+  imports: [
+    Icon,
+    MatButtonModule,
+    MatCheckboxModule,
+    MatMenuModule,
+    MatSortModule,
+    MatTableModule,
+    NgTemplateOutlet,
+    RouterLink,
+  ],
   templateUrl: './data-table.html',
   styleUrl: './data-table.scss',
 })
@@ -60,20 +80,28 @@ export class DataTable<T> {
   protected readonly hidden = computed(() => new Set((this.read('hide') ?? '').split(',').filter(Boolean)));
   protected readonly sort = computed<Order | null>(() => {
     const key = this.read('sort');
-    return key === null ? this.order() : { key, direction: this.read('direction') === 'desc' ? 'desc' : 'asc' };
+    return key === null
+      ? this.order()
+      : { key, direction: this.read('direction') === 'desc' ? 'desc' : 'asc' };
   });
-  protected readonly visible = computed(() => this.columns().filter((column) => !this.hidden().has(column.key)));
+  protected readonly visible = computed(() =>
+    this.columns().filter((column) => !this.hidden().has(column.key)),
+  );
   protected readonly keys = computed(() => this.visible().map((column) => column.key));
   private readonly matching = computed(() => found(this.rows(), this.columns(), this.find()));
   private readonly sorted = computed(() => {
     const sort = this.sort();
     const column = this.columns().find((one) => one.key === sort?.key);
-    return sort === null || column === undefined ? this.matching() : ordered(this.matching(), column, sort.direction, this.locale);
+    return sort === null || column === undefined
+      ? this.matching()
+      : ordered(this.matching(), column, sort.direction, this.locale);
   });
   protected readonly shown = computed(() => this.sorted().slice(0, this.limit()));
   protected readonly more = computed(() => this.sorted().length - this.shown().length);
   protected readonly count = computed(() => {
-    const [here, all] = [this.matching().length, this.rows().length].map((count) => figure(count, this.locale));
+    const [here, all] = [this.matching().length, this.rows().length].map((count) =>
+      figure(count, this.locale),
+    );
     return here === all ? `${all ?? ''} in all` : `${here ?? ''} of ${all ?? ''}`;
   });
   /** The row that Tab reaches; arrows move it. */
@@ -95,7 +123,10 @@ export class DataTable<T> {
   }
 
   protected sortBy(sort: Sort): void {
-    void this.write({ sort: sort.direction === '' ? null : sort.active, direction: sort.direction === '' ? null : sort.direction });
+    void this.write({
+      sort: sort.direction === '' ? null : sort.active,
+      direction: sort.direction === '' ? null : sort.direction,
+    });
   }
 
   protected search(text: string): void {
@@ -143,7 +174,9 @@ export class DataTable<T> {
 
   private table(): Cell[][] {
     const columns = this.visible();
-    const header = columns.map((column) => (column.unit ? `${column.header} (${column.unit})` : column.header));
+    const header = columns.map((column) =>
+      column.unit ? `${column.header} (${column.unit})` : column.header,
+    );
     return [header, ...this.sorted().map((row) => columns.map((column) => column.value(row)))];
   }
 
@@ -156,6 +189,8 @@ export class DataTable<T> {
   }
 
   private write(changes: Record<string, string | null>): Promise<void> {
-    return this.address.set(Object.fromEntries(Object.entries(changes).map(([part, value]) => [this.parameter(part), value])));
+    return this.address.set(
+      Object.fromEntries(Object.entries(changes).map(([part, value]) => [this.parameter(part), value])),
+    );
   }
 }

@@ -1,11 +1,22 @@
-import { ChangeDetectionStrategy, Component, type ElementRef, inject, input, output, signal, viewChild } from '@angular/core';
+import {
+  ChangeDetectionStrategy,
+  Component,
+  type ElementRef,
+  inject,
+  input,
+  output,
+  signal,
+  viewChild,
+} from '@angular/core';
 import { LOCALE } from '../../core/locale';
 import { figure } from '../format/numbers';
 import { Icon } from '../icon/icon';
 
 /** A size in megabytes at most; smaller ones in kilobytes. */
 function sizeOf(bytes: number, locale: string): string {
-  return bytes < 1e6 ? `${figure(Math.max(1, bytes / 1e3), locale)} kB` : `${figure(bytes / 1e6, locale, 1)} MB`;
+  return bytes < 1e6
+    ? `${figure(Math.max(1, bytes / 1e3), locale)} kB`
+    : `${figure(bytes / 1e6, locale, 1)} MB`;
 }
 
 /** One file, dropped here or picked from the machine. What is in it is the server's to judge. */
@@ -62,7 +73,9 @@ export class FileDrop {
   private take(files: readonly File[]): void {
     const [file] = files;
     if (file === undefined) return;
-    this.fault.set(files.length > 1 ? 'One file at a time, please.' : file.size === 0 ? `${file.name} is empty.` : '');
+    this.fault.set(
+      files.length > 1 ? 'One file at a time, please.' : file.size === 0 ? `${file.name} is empty.` : '',
+    );
     if (this.fault() !== '') return;
     this.file.set({ name: file.name, size: sizeOf(file.size, this.locale) });
     this.picked.emit(file);

@@ -24,7 +24,10 @@ describe('faults that the server found', () => {
 
   it('are sentences whatever their words', () => {
     const { form: whole, limit } = form();
-    showFaults(whole, new ProblemError(422, 'T', '', [{ path: 'layers.0.limit', message: 'a broker belongs to a firm' }]));
+    showFaults(
+      whole,
+      new ProblemError(422, 'T', '', [{ path: 'layers.0.limit', message: 'a broker belongs to a firm' }]),
+    );
     expect(faultOf(limit)).toBe('A broker belongs to a firm.');
   });
 

@@ -16,13 +16,17 @@ export function faultOf(control: AbstractControl): string {
 
 /** The contract's messages go on from the field's name: “must be above 0”. */
 function sentence(message: string): string {
-  const whole = /^(must|is|has|was|may|cannot)\b/.test(message) ? `This ${message}` : message.charAt(0).toUpperCase() + message.slice(1);
+  const whole = /^(must|is|has|was|may|cannot)\b/.test(message)
+    ? `This ${message}`
+    : message.charAt(0).toUpperCase() + message.slice(1);
   return /[.!?]$/.test(whole) ? whole : `${whole}.`;
 }
 
 function childOf(control: AbstractControl, name: string): AbstractControl | null {
-  if (control instanceof FormArray) return (control.controls as readonly AbstractControl[])[Number(name)] ?? null;
-  if (control instanceof FormGroup) return (control.controls as Record<string, AbstractControl>)[name] ?? null;
+  if (control instanceof FormArray)
+    return (control.controls as readonly AbstractControl[])[Number(name)] ?? null;
+  if (control instanceof FormGroup)
+    return (control.controls as Record<string, AbstractControl>)[name] ?? null;
   return null;
 }
 

@@ -16,7 +16,10 @@ export function shortAmount(amount: number, locale: string): string {
   // 999,950 rounds to a million and is written as one.
   const scale = SCALES.find((one) => Number((size / one.divisor).toPrecision(4)) >= 1);
   const divided = size / (scale?.divisor ?? 1);
-  const digits = new Intl.NumberFormat(locale, { maximumSignificantDigits: divided >= 1000 ? 4 : 3, useGrouping: false }).format(divided);
+  const digits = new Intl.NumberFormat(locale, {
+    maximumSignificantDigits: divided >= 1000 ? 4 : 3,
+    useGrouping: false,
+  }).format(divided);
   return (amount < 0 && Number(digits) !== 0 ? MINUS : '') + digits + (scale?.letters ?? '');
 }
 
@@ -30,12 +33,21 @@ export function exactAmount(amount: number | string, locale: string): string {
 export function percent(share: number, locale: string, decimals = 2): string {
   if (!Number.isFinite(share)) return '–';
   return withMinus(
-    new Intl.NumberFormat(locale, { style: 'percent', minimumFractionDigits: decimals, maximumFractionDigits: decimals }).format(share),
+    new Intl.NumberFormat(locale, {
+      style: 'percent',
+      minimumFractionDigits: decimals,
+      maximumFractionDigits: decimals,
+    }).format(share),
   );
 }
 
 /** A plain figure with a fixed count of decimals. */
 export function figure(value: number, locale: string, decimals = 0): string {
   if (!Number.isFinite(value)) return '–';
-  return withMinus(new Intl.NumberFormat(locale, { minimumFractionDigits: decimals, maximumFractionDigits: decimals }).format(value));
+  return withMinus(
+    new Intl.NumberFormat(locale, {
+      minimumFractionDigits: decimals,
+      maximumFractionDigits: decimals,
+    }).format(value),
+  );
 }

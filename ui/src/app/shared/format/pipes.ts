@@ -8,7 +8,9 @@ import { figure, percent, shortAmount } from './numbers';
 export class AmountPipe implements PipeTransform {
   private readonly locale = inject(LOCALE);
   transform(value: number | string | null | undefined): string {
-    return value === null || value === undefined || value === '' ? '–' : shortAmount(Number(value), this.locale);
+    return value === null || value === undefined || value === ''
+      ? '–'
+      : shortAmount(Number(value), this.locale);
   }
 }
 

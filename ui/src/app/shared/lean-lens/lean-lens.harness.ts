@@ -7,7 +7,12 @@ export class LeanLensHarness extends ComponentHarness {
   /** Names of the layers that are drawn. */
   async shown(): Promise<string[]> {
     const choices = await this.choices();
-    const states = await parallel(() => choices.map(async (choice) => ({ name: await choice.text(), on: await choice.getAttribute('aria-pressed') })));
+    const states = await parallel(() =>
+      choices.map(async (choice) => ({
+        name: await choice.text(),
+        on: await choice.getAttribute('aria-pressed'),
+      })),
+    );
     return states.filter((state) => state.on === 'true').map((state) => state.name);
   }
 

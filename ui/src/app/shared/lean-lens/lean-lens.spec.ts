@@ -5,7 +5,9 @@ import { LeanLens } from './lean-lens';
 import { LeanLensHarness } from './lean-lens.harness';
 
 // jsdom has no canvas and no layout: what is drawn is tested as an option, what it looks like in a browser.
-jest.mock('../chart/echarts', () => ({ init: () => ({ setOption: jest.fn(), resize: jest.fn(), dispose: jest.fn() }) }));
+jest.mock('../chart/echarts', () => ({
+  init: () => ({ setOption: jest.fn(), resize: jest.fn(), dispose: jest.fn() }),
+}));
 globalThis.ResizeObserver = class {
   observe = jest.fn();
   unobserve = jest.fn();
@@ -15,8 +17,24 @@ window.matchMedia = () => ({ matches: false, addEventListener: jest.fn() }) as u
 
 const LAYERS = ['First', 'Second', 'Third', 'Fourth'];
 const BINS: readonly LensBin[] = [
-  { shareFrom: 0, shareTo: 0.01, hunger: 6.5, meanCapital: 0.5, payoff: [1, 0.9, 0.8, 0.7], product: [0.1, 0.2, 0.3, 0.4], plain: [0.01, 0.02, 0.03, 0.04] },
-  { shareFrom: 0.01, shareTo: 1, hunger: 0.9, meanCapital: 1.1, payoff: [0, 0, 0, 0], product: [0, 0, 0, 0], plain: [0, 0, 0, 0] },
+  {
+    shareFrom: 0,
+    shareTo: 0.01,
+    hunger: 6.5,
+    meanCapital: 0.5,
+    payoff: [1, 0.9, 0.8, 0.7],
+    product: [0.1, 0.2, 0.3, 0.4],
+    plain: [0.01, 0.02, 0.03, 0.04],
+  },
+  {
+    shareFrom: 0.01,
+    shareTo: 1,
+    hunger: 0.9,
+    meanCapital: 1.1,
+    payoff: [0, 0, 0, 0],
+    product: [0, 0, 0, 0],
+    plain: [0, 0, 0, 0],
+  },
 ];
 
 async function open(): Promise<LeanLensHarness> {

@@ -35,9 +35,16 @@ export class LeanLens {
   protected readonly asTable = signal(false);
   protected readonly choices = computed(() => {
     const chosen = this.chosen();
-    return this.layers().map((name, index) => ({ name, index, on: chosen?.has(index) ?? index < AT_FIRST, colour: (index % LAYER_COLOURS) + 1 }));
+    return this.layers().map((name, index) => ({
+      name,
+      index,
+      on: chosen?.has(index) ?? index < AT_FIRST,
+      colour: (index % LAYER_COLOURS) + 1,
+    }));
   });
-  protected readonly shown = computed<readonly LensLayer[]>(() => this.choices().filter((choice) => choice.on));
+  protected readonly shown = computed<readonly LensLayer[]>(() =>
+    this.choices().filter((choice) => choice.on),
+  );
   protected readonly option = computed<ChartOption>(() => {
     const bins = this.bins();
     const layers = this.shown();
@@ -45,7 +52,9 @@ export class LeanLens {
   });
   protected readonly description = computed(() => {
     const bins = this.bins();
-    const names = this.shown().map((layer) => layer.name).join(', ');
+    const names = this.shown()
+      .map((layer) => layer.name)
+      .join(', ');
     const hungriest = bins[0]?.hunger ?? 0;
     return `Lean lens of ${names}: in the leanest states one unit is worth ${hungriest.toPrecision(3)} times its average, in the most plentiful ${(bins.at(-1)?.hunger ?? 0).toPrecision(3)} times. The figures are in the table.`;
   });
@@ -64,8 +73,18 @@ export class LeanLens {
 
   protected save(): void {
     const names = this.layers();
-    const header = ['share from', 'share to', 'hunger', ...names.flatMap((name) => [`${name} payoff`, `${name} product`, `${name} without hunger`])];
-    const rows = this.bins().map((bin) => [bin.shareFrom, bin.shareTo, bin.hunger, ...names.flatMap((_, i) => [bin.payoff[i] ?? 0, bin.product[i] ?? 0, bin.plain[i] ?? 0])]);
+    const header = [
+      'share from',
+      'share to',
+      'hunger',
+      ...names.flatMap((name) => [`${name} payoff`, `${name} product`, `${name} without hunger`]),
+    ];
+    const rows = this.bins().map((bin) => [
+      bin.shareFrom,
+      bin.shareTo,
+      bin.hunger,
+      ...names.flatMap((_, i) => [bin.payoff[i] ?? 0, bin.product[i] ?? 0, bin.plain[i] ?? 0]),
+    ]);
     downloadCsv(`${this.name()}.csv`, [header, ...rows]);
   }
 }

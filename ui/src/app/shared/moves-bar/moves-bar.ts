@@ -33,7 +33,9 @@ export class MovesBar {
     const first = allowed.find((offer) => !GRAVE.includes(offer.move));
     return allowed.map((offer) => ({ offer, first: offer === first }));
   });
-  protected readonly refused = computed(() => this.moves().filter((offer) => !offer.allowed && offer.reasons.length > 0));
+  protected readonly refused = computed(() =>
+    this.moves().filter((offer) => !offer.allowed && offer.reasons.length > 0),
+  );
 
   protected async choose(offer: MoveOffer): Promise<void> {
     const answer = await this.confirm.ask({

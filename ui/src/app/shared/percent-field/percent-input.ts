@@ -1,5 +1,11 @@
 import { Directive, ElementRef, forwardRef, inject, input } from '@angular/core';
-import { NG_VALIDATORS, NG_VALUE_ACCESSOR, type ControlValueAccessor, type ValidationErrors, type Validator } from '@angular/forms';
+import {
+  NG_VALIDATORS,
+  NG_VALUE_ACCESSOR,
+  type ControlValueAccessor,
+  type ValidationErrors,
+  type Validator,
+} from '@angular/forms';
 import { LOCALE } from '../../core/locale';
 import { percent } from '../format/numbers';
 import { parsePercent, typedPercent } from './parse-percent';
@@ -16,7 +22,13 @@ const use = forwardRef(() => PercentInput);
     { provide: NG_VALUE_ACCESSOR, useExisting: use, multi: true },
     { provide: NG_VALIDATORS, useExisting: use, multi: true },
   ],
-  host: { class: 'figures', inputmode: 'decimal', autocomplete: 'off', '(input)': 'typed()', '(blur)': 'left()' },
+  host: {
+    class: 'figures',
+    inputmode: 'decimal',
+    autocomplete: 'off',
+    '(input)': 'typed()',
+    '(blur)': 'left()',
+  },
 })
 export class PercentInput implements ControlValueAccessor, Validator {
   readonly least = input(0);

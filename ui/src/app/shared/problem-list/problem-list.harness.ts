@@ -11,7 +11,9 @@ export class ProblemListHarness extends ComponentHarness {
   async rows(): Promise<string[]> {
     const cells = await this.locatorForAll('tbody td')();
     const texts = await parallel(() => cells.map((cell) => cell.text()));
-    return Array.from({ length: texts.length / 4 }, (_, row) => texts.slice(row * 4, row * 4 + 4).join(' | '));
+    return Array.from({ length: texts.length / 4 }, (_, row) =>
+      texts.slice(row * 4, row * 4 + 4).join(' | '),
+    );
   }
 
   async beyond(): Promise<string> {

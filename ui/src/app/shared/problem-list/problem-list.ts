@@ -24,19 +24,25 @@ export class ProblemList {
   protected readonly shown = computed(() => this.report().problems.slice(0, SHOWN));
   protected readonly summary = computed(() => {
     const { problemCount, rows, fileName } = this.report();
-    const problems = new Intl.PluralRules(this.locale).select(problemCount) === 'one' ? 'problem' : 'problems';
+    const problems =
+      new Intl.PluralRules(this.locale).select(problemCount) === 'one' ? 'problem' : 'problems';
     return `${figure(problemCount, this.locale)} ${problems} in ${figure(rows, this.locale)} rows of ${fileName}. Nothing of it was kept.`;
   });
   protected readonly beyond = computed(() => {
     const { problemCount, problems } = this.report();
     if (problemCount <= this.shown().length) return '';
     const words = `The first ${figure(this.shown().length, this.locale)} are shown`;
-    return problems.length > this.shown().length ? `${words}; the first ${figure(problems.length, this.locale)} can be downloaded.` : `${words}.`;
+    return problems.length > this.shown().length
+      ? `${words}; the first ${figure(problems.length, this.locale)} can be downloaded.`
+      : `${words}.`;
   });
 
   protected save(): void {
     const { fileName, problems } = this.report();
     const rows = problems.map((one) => [one.line, one.column, one.value, one.message]);
-    downloadCsv(`problems of ${fileName.replace(/\.\w+$/, '')}.csv`, [['line', 'column', 'value', 'problem'], ...rows]);
+    downloadCsv(`problems of ${fileName.replace(/\.\w+$/, '')}.csv`, [
+      ['line', 'column', 'value', 'problem'],
+      ...rows,
+    ]);
   }
 }

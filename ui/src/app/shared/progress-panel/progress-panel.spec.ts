@@ -15,12 +15,22 @@ describe('long work', () => {
   afterEach(() => jest.restoreAllMocks());
 
   it('says what, how far and about how long', async () => {
-    const { panel } = await open({ doing: 'Simulating years', done: 25, total: 100, startedAt: '2027-01-01T00:00:00Z' });
+    const { panel } = await open({
+      doing: 'Simulating years',
+      done: 25,
+      total: 100,
+      startedAt: '2027-01-01T00:00:00Z',
+    });
     expect(await panel.words()).toMatch(/Simulating years\s*25%\s*about 3 minutes more/);
   });
 
   it('promises nothing while it is too early to tell', async () => {
-    const { panel } = await open({ doing: 'Simulating years', done: 1, total: 100, startedAt: '2027-01-01T00:00:00Z' });
+    const { panel } = await open({
+      doing: 'Simulating years',
+      done: 1,
+      total: 100,
+      startedAt: '2027-01-01T00:00:00Z',
+    });
     expect(await panel.words()).not.toContain('about');
   });
 

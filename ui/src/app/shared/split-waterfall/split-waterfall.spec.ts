@@ -5,8 +5,18 @@ import { SplitWaterfallHarness } from './split-waterfall.harness';
 import { waterfallRows, type PremiumSplit } from './waterfall-rows';
 
 const SPLIT: PremiumSplit = {
-  risklessLoss: 40, leanLoad: 50, lossAdjustment: 1, fixedExpense: 2, brokerageAndExpense: 17, reinstatementValue: -10,
-  marginalPremium: 100, lineSizeLoad: 8, walkAwayPremium: 108, margin: 12, minimumTopUp: 0, technicalPremium: 120,
+  risklessLoss: 40,
+  leanLoad: 50,
+  lossAdjustment: 1,
+  fixedExpense: 2,
+  brokerageAndExpense: 17,
+  reinstatementValue: -10,
+  marginalPremium: 100,
+  lineSizeLoad: 8,
+  walkAwayPremium: 108,
+  margin: 12,
+  minimumTopUp: 0,
+  technicalPremium: 120,
 };
 
 describe('the premium taken apart', () => {
@@ -28,7 +38,9 @@ describe('the premium taken apart', () => {
   it('leaves out what adds nothing', async () => {
     const fixture = TestBed.createComponent(SplitWaterfall);
     fixture.componentRef.setInput('split', SPLIT);
-    const parts = await (await TestbedHarnessEnvironment.harnessForFixture(fixture, SplitWaterfallHarness)).parts();
+    const parts = await (
+      await TestbedHarnessEnvironment.harnessForFixture(fixture, SplitWaterfallHarness)
+    ).parts();
     expect(parts).toHaveLength(11);
     expect(parts).not.toContain('minimumTopUp');
   });

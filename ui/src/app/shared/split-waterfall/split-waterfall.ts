@@ -16,6 +16,8 @@ export class SplitWaterfall {
   readonly currency = input('');
   readonly label = input('Where the premium comes from');
   /** Lines of no amount say nothing; totals always stand. */
-  protected readonly rows = computed(() => waterfallRows(this.split()).filter((row) => row.kind === 'total' || row.amount !== 0));
+  protected readonly rows = computed(() =>
+    waterfallRows(this.split()).filter((row) => row.kind === 'total' || row.amount !== 0),
+  );
   protected readonly whole = computed(() => this.split().technicalPremium);
 }

@@ -1,4 +1,13 @@
-import type { BasisState, CatalogueState, MailState, QuoteKind, QuoteState, RunStanding, RunState, SubmissionState } from '@leanyear/vocabulary';
+import type {
+  BasisState,
+  CatalogueState,
+  MailState,
+  QuoteKind,
+  QuoteState,
+  RunStanding,
+  RunState,
+  SubmissionState,
+} from '@leanyear/vocabulary';
 
 /** Said by icon and words first; the tone only repeats it. */
 export type Tone = 'quiet' | 'waiting' | 'good' | 'settled' | 'fault';
@@ -8,7 +17,8 @@ export interface Look {
   readonly tone: Tone;
 }
 
-export type AnyState = QuoteState | QuoteKind | RunState | RunStanding | CatalogueState | BasisState | SubmissionState | MailState;
+export type AnyState =
+  QuoteState | QuoteKind | RunState | RunStanding | CatalogueState | BasisState | SubmissionState | MailState;
 
 export const LOOKS: Readonly<Record<AnyState, Look>> = {
   draft: { icon: 'edit', tone: 'quiet' },

@@ -8,7 +8,8 @@ import { StatePanelHarness } from './state-panel.harness';
 @Component({
   changeDetection: ChangeDetectionStrategy.OnPush,
   imports: [StatePanel],
-  template: '<ly-state-panel title="No quotes yet" detail="Price a programme first." [of]="of" (again)="asked()"><a href="#">Go</a></ly-state-panel>',
+  template:
+    '<ly-state-panel title="No quotes yet" detail="Price a programme first." [of]="of" (again)="asked()"><a href="#">Go</a></ly-state-panel>',
 })
 class Page {
   static load: () => Promise<unknown> = () => Promise.resolve([]);
@@ -23,7 +24,10 @@ async function open(load: () => Promise<unknown>) {
   return { page: fixture.componentInstance, panel };
 }
 
-const failing = (status: number, errorId: string | null = null) => () => Promise.reject(new ProblemError(status, 'T', 'It broke.', [], [], errorId));
+const failing =
+  (status: number, errorId: string | null = null) =>
+  () =>
+    Promise.reject(new ProblemError(status, 'T', 'It broke.', [], [], errorId));
 
 describe('what stands where content would', () => {
   it('says what to do next where there is nothing', async () => {

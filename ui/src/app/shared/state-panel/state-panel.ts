@@ -15,9 +15,21 @@ const WORDS: Readonly<Record<StateKind, Words>> = {
   empty: { icon: 'inbox', title: 'Nothing here yet', detail: '' },
   loading: { icon: 'hourglass_top', title: 'Reading', detail: '' },
   failed: { icon: 'error', title: 'This could not be read', detail: '' },
-  forbidden: { icon: 'lock', title: 'This is not open to you', detail: 'Your role does not include it. A senior or the administrator can say who has it.' },
-  missing: { icon: 'search', title: 'There is nothing here', detail: 'It was never here, or it is not yours to see.' },
-  offline: { icon: 'wifi_off', title: 'No connection', detail: 'The desk cannot be reached. Try again once you are connected.' },
+  forbidden: {
+    icon: 'lock',
+    title: 'This is not open to you',
+    detail: 'Your role does not include it. A senior or the administrator can say who has it.',
+  },
+  missing: {
+    icon: 'search',
+    title: 'There is nothing here',
+    detail: 'It was never here, or it is not yours to see.',
+  },
+  offline: {
+    icon: 'wifi_off',
+    title: 'No connection',
+    detail: 'The desk cannot be reached. Try again once you are connected.',
+  },
 };
 
 function kindOf(status: number): StateKind {
@@ -64,7 +76,9 @@ export class StatePanel {
     return {
       icon: this.icon() || words.icon,
       title: (problem === null && this.title()) || words.title,
-      detail: (problem === null ? this.detail() : state === 'failed' ? problem.message : words.detail) || words.detail,
+      detail:
+        (problem === null ? this.detail() : state === 'failed' ? problem.message : words.detail) ||
+        words.detail,
     };
   });
   protected readonly mayTryAgain = computed(() => this.state() === 'failed' || this.state() === 'offline');

@@ -20,7 +20,11 @@ export interface TowerBlock extends TowerLayer {
 /** Layers to scale, lowest first. What cannot be read as an amount stands as nothing. */
 export function towerBlocks(layers: readonly TowerLayer[]): readonly TowerBlock[] {
   const spans = layers
-    .map((layer) => ({ layer, low: Number(layer.attachment) || 0, high: (Number(layer.attachment) || 0) + (Number(layer.limit) || 0) }))
+    .map((layer) => ({
+      layer,
+      low: Number(layer.attachment) || 0,
+      high: (Number(layer.attachment) || 0) + (Number(layer.limit) || 0),
+    }))
     .sort((a, b) => a.low - b.low || a.high - b.high);
   const top = Math.max(1, ...spans.map((span) => span.high));
   const ends: number[] = [];
@@ -30,5 +34,11 @@ export function towerBlocks(layers: readonly TowerLayer[]): readonly TowerBlock[
     ends[column] = span.high;
     return { ...span, column };
   });
-  return placed.map(({ layer, low, high, column }) => ({ ...layer, bottom: low / top, height: (high - low) / top, column, columns: ends.length }));
+  return placed.map(({ layer, low, high, column }) => ({
+    ...layer,
+    bottom: low / top,
+    height: (high - low) / top,
+    column,
+    columns: ends.length,
+  }));
 }

@@ -4,11 +4,20 @@ import { Tower } from './tower';
 import { TowerHarness } from './tower.harness';
 import { towerBlocks, type TowerLayer } from './tower-blocks';
 
-const layer = (name: string, attachment: string, limit: string): TowerLayer => ({ key: name, name, attachment, limit, writtenLine: 0.1 });
+const layer = (name: string, attachment: string, limit: string): TowerLayer => ({
+  key: name,
+  name,
+  attachment,
+  limit,
+  writtenLine: 0.1,
+});
 
 describe('the tower of a programme', () => {
   it('stands to scale, from the ground up', () => {
-    const blocks = towerBlocks([layer('second', '30000000', '70000000'), layer('first', '10000000', '20000000')]);
+    const blocks = towerBlocks([
+      layer('second', '30000000', '70000000'),
+      layer('first', '10000000', '20000000'),
+    ]);
     expect(blocks.map(({ name, bottom, height, columns }) => ({ name, bottom, height, columns }))).toEqual([
       { name: 'first', bottom: 0.1, height: 0.2, columns: 1 },
       { name: 'second', bottom: 0.3, height: 0.7, columns: 1 },

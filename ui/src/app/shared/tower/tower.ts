@@ -45,11 +45,19 @@ export class Tower {
   });
   /** Attachments and tops, the ones too near another left out. */
   protected readonly marks = computed(() => {
-    const ends = this.layers().flatMap((layer) => [Number(layer.attachment) || 0, (Number(layer.attachment) || 0) + (Number(layer.limit) || 0)]);
+    const ends = this.layers().flatMap((layer) => [
+      Number(layer.attachment) || 0,
+      (Number(layer.attachment) || 0) + (Number(layer.limit) || 0),
+    ]);
     const all = [...new Set([0, ...ends])].sort((a, b) => b - a);
     const top = all[0] || 1;
     const marks = all.map((amount) => ({ amount, y: HEIGHT - (amount / top) * HEIGHT }));
-    return marks.filter((mark, index) => index === 0 || marks.slice(0, index).every((above) => mark.y - above.y >= 14 || above.y === mark.y));
+    return marks.filter(
+      (mark, index) =>
+        index === 0 || marks.slice(0, index).every((above) => mark.y - above.y >= 14 || above.y === mark.y),
+    );
   });
-  protected readonly description = computed(() => `Tower of ${this.layers().length} layers to scale; the list beside it names them.`);
+  protected readonly description = computed(
+    () => `Tower of ${this.layers().length} layers to scale; the list beside it names them.`,
+  );
 }
