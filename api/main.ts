@@ -15,7 +15,7 @@ async function main(): Promise<void> {
     await app.close();
     await notices.close();
   };
-  await listenUntilStopped({ express: app.express, quiet: app.quiet, close }, { host: config.HOST, port: config.PORT }, log);
+  await listenUntilStopped({ express: app.express, quiet: () => app.quiet(), close }, { host: config.HOST, port: config.PORT }, log);
 }
 
 main().catch((error: unknown) => {

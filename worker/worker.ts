@@ -77,7 +77,7 @@ export async function openWorker(deps: WorkerDeps): Promise<OpenedWorker> {
     log.error({ errorId, stack: error instanceof Error ? error.stack : String(error) }, 'trouble in the worker');
     return errorId;
   };
-  const post = config.SMTP_URL === undefined ? await openPostOffice(capturedMails(dataSource).keep) : null;
+  const post = config.SMTP_URL === undefined ? await openPostOffice((delivery) => capturedMails(dataSource).keep(delivery)) : null;
   const sender = smtpSender(config.SMTP_URL ?? post?.url ?? '', config.LEANYEAR_MAIL_FROM);
   const computer = computePool(config.LEANYEAR_WORKER_THREADS, deps.threadFile ?? THREAD_FILE);
   const desk = runDesk(dataSource);

@@ -8,6 +8,7 @@ const jobData = z.object({ topic: z.enum(OUTBOX_TOPICS), subjectId: z.string() }
 /** A worker that was killed is noticed within about six seconds, and its job given to another. */
 const RECOVERY = { lockDuration: 5000, stalledInterval: 2000, maxStalledCount: 3 } as const;
 const KEEP_SECONDS = 3600;
+const PATIENCE_MILLISECONDS = 3000;
 
 function connectionOf(redisUrl: string, forWorker: boolean): ConnectionOptions {
   const url = new URL(redisUrl);
@@ -19,10 +20,21 @@ function connectionOf(redisUrl: string, forWorker: boolean): ConnectionOptions {
     db: Number(url.pathname.slice(1) || 0),
     ...(url.protocol === 'rediss:' ? { tls: {} } : {}),
     maxRetriesPerRequest: forWorker ? null : 1,
-    // A wake that cannot be handed over now must fail now: its row waits in the outbox.
-    enableOfflineQueue: forWorker,
     retryStrategy: (attempt: number) => Math.min(200 * attempt, 2000),
   };
+}
+
+/** A wake that cannot be handed over soon counts as not handed over: its row waits in the outbox, and twice does no harm. */
+async function soon<T>(work: Promise<T>): Promise<T> {
+  let timer: NodeJS.Timeout | undefined;
+  const late = new Promise<never>((_resolve, reject) => {
+    timer = setTimeout(() => reject(new Error('Redis does not answer')), PATIENCE_MILLISECONDS);
+  });
+  try {
+    return await Promise.race([work, late]);
+  } finally {
+    clearTimeout(timer);
+  }
 }
 
 /** Runs have a queue of their own, so that a long one holds up no mail. */
@@ -30,27 +42,24 @@ const queueOf = (topic: Wake['topic']): 'runs' | 'acts' => (topic === 'run.start
 
 /** The wake queue on Redis. */
 export function bullmqQueue(redisUrl: string, prefix = 'leanyear'): WakeQueue {
-  const options = { connection: connectionOf(redisUrl, false), prefix, skipWaitingForReady: true };
+  const options = { connection: connectionOf(redisUrl, false), prefix };
   const queues = { runs: new Queue('runs', options), acts: new Queue('acts', options) };
   // Connection trouble is met where a wake is handed over; without a listener it would end the process.
   for (const queue of Object.values(queues)) queue.on('error', () => undefined);
   const workers: Worker[] = [];
   return {
     async add({ id, topic, subjectId }) {
-      await queues[queueOf(topic)].add(
-        topic,
-        { topic, subjectId },
-        {
-          jobId: id,
-          attempts: TRIES[topic],
-          backoff: { type: 'exponential', delay: FIRST_WAIT_MILLISECONDS },
-          removeOnComplete: { age: KEEP_SECONDS, count: 1000 },
-          removeOnFail: { age: KEEP_SECONDS, count: 1000 },
-        },
-      );
+      const options = {
+        jobId: id,
+        attempts: TRIES[topic],
+        backoff: { type: 'exponential', delay: FIRST_WAIT_MILLISECONDS },
+        removeOnComplete: { age: KEEP_SECONDS, count: 1000 },
+        removeOnFail: { age: KEEP_SECONDS, count: 1000 },
+      };
+      await soon(queues[queueOf(topic)].add(topic, { topic, subjectId }, options));
     },
     async check() {
-      await queues.acts.getJobCounts('waiting');
+      await soon(queues.acts.getJobCounts('waiting'));
     },
     work(handlers, onTrouble) {
       const process = async (job: Job): Promise<void> => {

@@ -21,7 +21,7 @@ async function main(): Promise<void> {
     await dataSource.destroy();
     await app.close();
   };
-  await listenUntilStopped({ express: app.express, quiet: app.quiet, close }, { host: config.HOST, port: config.PORT }, log);
+  await listenUntilStopped({ express: app.express, quiet: () => app.quiet(), close }, { host: config.HOST, port: config.PORT }, log);
 }
 
 main().catch((error: unknown) => {

@@ -84,7 +84,7 @@ export function houseReader(dataSource: DataSource): HouseReader {
   return {
     bases: () => bases(dataSource),
     async book() {
-      const contracts = ((await dataSource.query(CONTRACTS)) as ContractJoin[]).map(contractOf);
+      const contracts = (await dataSource.query<ContractJoin[]>(CONTRACTS)).map(contractOf);
       const heads: { version: number }[] = await dataSource.query('SELECT version FROM book_head');
       const released = (await bases(dataSource)).find((basis) => basis.state === 'released');
       const currency = released?.terms.currency ?? 'EUR';

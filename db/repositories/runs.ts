@@ -29,7 +29,7 @@ export function runsRepository(dataSource: DataSource): Runs {
     },
     async repricing(runId) {
       const row = await dataSource.manager.findOneBy(RunRow, { id: runId });
-      return row?.repricesQuoteId == null ? null : { quoteId: row.repricesQuoteId, state: row.state };
+      return row === null || row.repricesQuoteId === null ? null : { quoteId: row.repricesQuoteId, state: row.state };
     },
     async cancel(transaction, runId) {
       const manager = managerOf(transaction);

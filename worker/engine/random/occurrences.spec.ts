@@ -10,7 +10,7 @@ const draw = (catalogue: Catalogue, block = 0): Occurrences =>
 function lines(catalogue: Catalogue, drawn: Occurrences): string[] {
   return Array.from(drawn.state, (state, i) => {
     const event = catalogue.eventNames[drawn.event[i] ?? 0] ?? '';
-    return `${event} ${state} ${drawn.day[i]} ${drawn.score[i]} ${drawn.ordinal[i]}`;
+    return [event, state, drawn.day[i], drawn.score[i], drawn.ordinal[i]].join(' ');
   }).sort();
 }
 
