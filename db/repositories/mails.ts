@@ -41,7 +41,7 @@ export function mailStore(dataSource: DataSource): MailStore {
   return {
     async beginAttempt(mailId) {
       const [rows]: [WaitingRow[], number] = await dataSource.query(
-        `UPDATE mails SET attempts = attempts + 1
+        `UPDATE mails SET attempts = mails.attempts + 1
          FROM mails m LEFT JOIN people p ON p.id = m.person_id LEFT JOIN contacts c ON c.id = m.contact_id
          WHERE mails.id = $1 AND m.id = mails.id AND mails.state = 'waiting'
          RETURNING mails.id, mails.kind, mails.model, mails.subject, mails.message_id, mails.attempts,
