@@ -1,3 +1,4 @@
+import type { RunResult } from '../../api/contract/runs';
 import type { Valuation } from '../../worker/engine';
 import type { Estimate, ScipyValuation } from './scipy';
 
@@ -23,8 +24,15 @@ function borrowed(value: number, of: Estimate, states: { ours: number; theirs: n
   return { value, standardError: of.standardError * Math.sqrt(states.theirs / states.ours) };
 }
 
-/** Every figure that both an engine's valuation and SciPy's have. */
-export function comparison(ours: Valuation, theirs: ScipyValuation): Compared[] {
+/** What a house would lose in 1 of `years`, before the programme. */
+function tail({ house }: Valuation | RunResult, years: number): number {
+  for (const point of house.tailBefore)
+    if (point.years === years) return ('loss' in point ? point.loss : point.value) ?? Number.NaN;
+  return Number.NaN;
+}
+
+/** Every figure that SciPy's valuation shares with the engine's, or with a run read over the API. */
+export function comparison(ours: Valuation | RunResult, theirs: ScipyValuation): Compared[] {
   const states = { ours: ours.states, theirs: theirs.states };
   const layers = ours.layers.flatMap((layer, l) => {
     const other = theirs.layers[l];
@@ -55,13 +63,11 @@ export function comparison(ours: Valuation, theirs: ScipyValuation): Compared[] 
   });
   const { total } = theirs.programme.walkAway;
   const { oneIn100, oneIn250, largestSharpeRatio } = theirs.house;
-  const tail = (wanted: number): number =>
-    ours.house.tailBefore.find(({ years }) => years === wanted)?.value ?? Number.NaN;
   return [
     ...layers,
     compared('programme walk-away', borrowed(ours.programme.walkAwayPremium, total, states), total),
-    compared('house, 1 in 100', borrowed(tail(100), oneIn100, states), oneIn100),
-    compared('house, 1 in 250', borrowed(tail(250), oneIn250, states), oneIn250),
+    compared('house, 1 in 100', borrowed(tail(ours, 100), oneIn100, states), oneIn100),
+    compared('house, 1 in 250', borrowed(tail(ours, 250), oneIn250, states), oneIn250),
     compared(
       'largest Sharpe ratio',
       borrowed(ours.house.largestSharpeRatio, largestSharpeRatio, states),
