@@ -7,7 +7,9 @@ import { SessionStore } from './session';
 export interface DeskEvent {
   readonly topic: StreamTopic;
   readonly id: string;
-  readonly [detail: string]: unknown;
+  /** Of a run: how far it is. */
+  readonly progress?: { readonly done: number; readonly total: number; readonly doing: string };
+  readonly state?: string;
 }
 
 /** The stream was broken for a while: whatever is shown may be old. */
