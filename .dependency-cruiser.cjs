@@ -51,7 +51,7 @@ module.exports = {
       from: { path: '^api/', pathNot: [...MAIN_FILES, SPEC] },
       to: { path: '^db/' },
     },
-    only('db', '^db/', ['^db/', '^api/domain/', '^api/contract/', '^api/features/[^/]+/port\\.ts$'], 'The database side knows the domain and, as types, what is read.', { except: [SPEC] }),
+    only('db', '^db/', ['^db/', '^api/domain/', '^api/contract/', '^api/features/[^/]+/port\\.ts$', '^fixtures/demo/scenario\\.ts$'], 'The database side knows the domain and, as types, what is read.', { except: [SPEC] }),
     {
       name: 'db-types-of-the-edge',
       comment: 'Of the contract and of a feature’s port the database side takes types only.',

@@ -21,3 +21,5 @@ export function createDataSource(url: string, options: { readonly poolSize?: num
     extra: { statement_timeout: 60_000, idle_in_transaction_session_timeout: 60_000 },
   });
 }
+
+export type { DataSource };

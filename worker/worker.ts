@@ -1,12 +1,11 @@
 import { randomUUID } from 'node:crypto';
-import type { DataSource } from 'typeorm';
 import type { Logger } from 'pino';
 import type { Config } from '../api/config/config';
 import { ENGINE_VERSION } from '../api/domain/run/engine-version';
 import type { NoticeBoard } from '../api/domain/shared/stream';
 import type { WakeQueue } from '../api/queue/port';
 import { sealAudit } from '../db/audit-chain';
-import { createDataSource } from '../db/data-source';
+import { createDataSource, type DataSource } from '../db/data-source';
 import { standingsUnder } from '../db/read-models/run-standing';
 import { readRunWork } from '../db/read-models/run-work';
 import { auditTrail } from '../db/repositories/audit-trail';
