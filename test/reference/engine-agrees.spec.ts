@@ -1,26 +1,12 @@
-import {
-  joinBlocks,
-  prepare,
-  valueBlock,
-  type Catalogue,
-  type Valuation,
-  type ValuationInputs,
-} from '../../worker/engine';
+import type { Catalogue, ValuationInputs } from '../../worker/engine';
 import { inventedInputs, inventedLayer, inventedTable } from '../../worker/engine/testing/invented';
 import { comparison, disagreements } from './agreement';
+import { valuedByEngine } from './engine';
 import { priceByScipy, scipyRequestOf } from './scipy';
 
 jest.setTimeout(120_000);
 
-const STATES = 100_000;
-
-function valued(inputs: ValuationInputs): Valuation {
-  const prepared = prepare(inputs);
-  return joinBlocks(
-    prepared,
-    Array.from({ length: prepared.blocks }, (_unused, index) => valueBlock(prepared, index)),
-  );
-}
+const STATES = 300_000;
 
 /** A house that its book can hurt, and layers with every annual term. */
 function scenario(): ValuationInputs {
@@ -72,7 +58,7 @@ describe('the engine and an independent valuation by SciPy', () => {
   ])('agree within 4 standard errors: %s', async (_what, inputs) => {
     const { request, files } = scipyRequestOf(inputs);
     const theirs = await priceByScipy(request, files, { states: STATES });
-    const ours = valued(inputs);
+    const ours = await valuedByEngine(inputs);
     expect(ours.selfCheck.flagged).toBe(false);
     expect(disagreements(comparison(ours, theirs))).toEqual([]);
     expect(Math.abs(ours.house.netPremium / theirs.house.netPremium - 1)).toBeLessThan(1e-12);
@@ -85,7 +71,7 @@ describe('the engine and an independent valuation by SciPy', () => {
       basis: { ...inputs.basis, lossAdjustment: 0.12 },
     });
     const theirs = await priceByScipy(request, files, { states: STATES });
-    const apart = disagreements(comparison(valued(inputs), theirs)).map(({ figure }) => figure);
+    const apart = disagreements(comparison(await valuedByEngine(inputs), theirs)).map(({ figure }) => figure);
     expect(apart).toEqual(
       expect.arrayContaining([
         'working: marginal premium',
