@@ -29,6 +29,12 @@ export class ProblemError extends Error {
     super(detail === '' ? title : detail);
     this.name = 'ProblemError';
   }
+
+  /** All it says, a sentence each: every reason, or every fault, or what happened. */
+  get words(): readonly string[] {
+    const said = this.reasons.length > 0 ? this.reasons : this.errors;
+    return said.length > 0 ? said.map((one) => one.message) : [this.message];
+  }
 }
 
 function isRecord(value: unknown): value is Record<string, unknown> {

@@ -10,7 +10,7 @@ import { firstValueFrom } from 'rxjs';
 import { Api } from '../../core/api';
 import { asProblem } from '../../core/problem';
 import { AmountInput } from '../../shared/amount/amount-input';
-import { aboveZero, faultOf, showFaults } from '../../shared/form/faults';
+import { aboveZero, faultOf, sayFaults } from '../../shared/form/faults';
 
 /** A draft's premiums, kind and validity; its terms are those of its run. */
 @Component({
@@ -92,9 +92,7 @@ export class EditQuote {
       const body = { runId: quote.runId, kind, validUntil, note, layers: quote.layers.map(({ key }, i) => ({ key, premium: layers[i] ?? '' })) };
       this.saved.emit(await firstValueFrom(this.api.send(updateQuote, { params: { id: quote.id }, body, ifMatch: quote.version })));
     } catch (error) {
-      const problem = asProblem(error);
-      const rest = showFaults(this.form, problem).map((fault) => fault.message);
-      this.refusal.set(problem.errors.length > 0 ? rest : problem.reasons.length > 0 ? problem.reasons.map((reason) => reason.message) : [problem.message]);
+      this.refusal.set(sayFaults(this.form, asProblem(error)));
     } finally {
       this.busy.set(false);
     }

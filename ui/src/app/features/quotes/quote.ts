@@ -86,8 +86,7 @@ export class QuotePage {
       if (quote.id === this.quoteId()) this.quote.set(quote);
       else await this.router.navigate(['/quotes', quote.id]);
     } catch (error) {
-      const problem = asProblem(error);
-      this.refusal.set(problem.reasons.length > 0 ? problem.reasons.map((reason) => reason.message) : [problem.message]);
+      this.refusal.set(asProblem(error).words);
       this.quote.reload();
     } finally {
       this.busy.set(false);

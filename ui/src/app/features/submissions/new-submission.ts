@@ -11,7 +11,7 @@ import { createSubmission } from '@leanyear/contract/submissions';
 import { firstValueFrom } from 'rxjs';
 import { Api } from '../../core/api';
 import { asProblem } from '../../core/problem';
-import { faultOf, showFaults } from '../../shared/form/faults';
+import { faultOf, sayFaults } from '../../shared/form/faults';
 import { StatePanel } from '../../shared/state-panel/state-panel';
 
 @Component({
@@ -57,7 +57,7 @@ export class NewSubmission {
       this.form.controls.cedantId.setValue(made.id);
       this.addingCedant.set(false);
     } catch (error) {
-      this.refusal.set(showFaults(this.cedantForm, asProblem(error)).map((fault) => fault.message));
+      this.refusal.set(sayFaults(this.cedantForm, asProblem(error)));
     }
   }
 
@@ -69,9 +69,7 @@ export class NewSubmission {
       const made = await firstValueFrom(this.api.send(createSubmission, { body: this.form.getRawValue() }));
       await this.router.navigate(['/submissions', made.id, 'losses']);
     } catch (error) {
-      const problem = asProblem(error);
-      const rest = showFaults(this.form, problem).map((fault) => fault.message);
-      this.refusal.set(problem.errors.length > 0 ? rest : [problem.message]);
+      this.refusal.set(sayFaults(this.form, asProblem(error)));
     } finally {
       this.busy.set(false);
     }

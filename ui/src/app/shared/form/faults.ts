@@ -50,3 +50,9 @@ export const aboveZero: ValidatorFn = (control) => {
   const text: unknown = control.value;
   return text !== '' && Number(text) <= 0 ? { aboveZero: 'This must be above 0.' } : null;
 };
+
+/** Puts faults beside their fields and answers what is left to be said above the form. */
+export function sayFaults(form: AbstractControl, problem: ProblemError): readonly string[] {
+  if (problem.errors.length === 0) return problem.words;
+  return showFaults(form, problem).map((fault) => sentence(fault.message));
+}

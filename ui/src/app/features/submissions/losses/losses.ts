@@ -13,7 +13,7 @@ import { asProblem } from '../../../core/problem';
 import { SessionStore } from '../../../core/session';
 import { Amount } from '../../../shared/amount/amount';
 import { FileDrop } from '../../../shared/file-drop/file-drop';
-import { faultOf, showFaults } from '../../../shared/form/faults';
+import { faultOf, sayFaults } from '../../../shared/form/faults';
 import { FigurePipe, MomentPipe, SharePipe } from '../../../shared/format/pipes';
 import { ProblemList } from '../../../shared/problem-list/problem-list';
 import { ProgressPanel } from '../../../shared/progress-panel/progress-panel';
@@ -88,7 +88,7 @@ export class Losses {
         this.sending.set(null);
         const problem = asProblem(error);
         if (problem.report) this.report.set(problem.report);
-        else this.refusal.set(problem.errors.length > 0 ? showFaults(this.form, problem).map((fault) => fault.message) : [problem.message]);
+        else this.refusal.set(sayFaults(this.form, problem));
       },
     });
   }

@@ -12,7 +12,7 @@ import { firstValueFrom } from 'rxjs';
 import { Api } from '../../../core/api';
 import { asProblem } from '../../../core/problem';
 import { AmountInput } from '../../../shared/amount/amount-input';
-import { aboveZero, faultOf, showFaults } from '../../../shared/form/faults';
+import { aboveZero, faultOf, sayFaults } from '../../../shared/form/faults';
 
 const FORTNIGHT_MILLISECONDS = 14 * 24 * 3600 * 1000;
 
@@ -112,9 +112,7 @@ export class DraftQuote {
       );
       await this.router.navigate(['/quotes', quote.id]);
     } catch (error) {
-      const problem = asProblem(error);
-      const rest = showFaults(this.form, problem).map((fault) => fault.message);
-      this.refusal.set(problem.errors.length > 0 ? rest : problem.reasons.length > 0 ? problem.reasons.map((reason) => reason.message) : [problem.message]);
+      this.refusal.set(sayFaults(this.form, asProblem(error)));
     } finally {
       this.busy.set(false);
     }

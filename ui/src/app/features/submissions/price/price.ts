@@ -105,8 +105,7 @@ export class Price {
       await this.address.set({ programme: present.id, run: run.id });
       this.runs.reload();
     } catch (error) {
-      const problem = asProblem(error);
-      this.refusal.set(problem.reasons.length > 0 ? problem.reasons.map((reason) => reason.message) : [problem.message]);
+      this.refusal.set(asProblem(error).words);
     } finally {
       this.busy.set(false);
     }

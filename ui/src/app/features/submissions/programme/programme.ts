@@ -13,7 +13,7 @@ import { Notices } from '../../../core/notices';
 import { asProblem } from '../../../core/problem';
 import { SessionStore } from '../../../core/session';
 import { AmountInput } from '../../../shared/amount/amount-input';
-import { faultOf, showFaults } from '../../../shared/form/faults';
+import { faultOf, sayFaults } from '../../../shared/form/faults';
 import { Icon } from '../../../shared/icon/icon';
 import { PercentInput } from '../../../shared/percent-field/percent-input';
 import { StatePanel } from '../../../shared/state-panel/state-panel';
@@ -170,8 +170,7 @@ export class ProgrammePage {
     } catch (error) {
       const problem = asProblem(error);
       if (problem.status === 412) await this.showTheirs();
-      const rest = showFaults(form, problem).map((fault) => `${fault.path}: ${fault.message}`);
-      this.refusal.set(problem.errors.length > 0 ? rest : problem.reasons.length > 0 ? problem.reasons.map((reason) => reason.message) : [problem.message]);
+      this.refusal.set(sayFaults(form, problem));
       return null;
     } finally {
       this.busy.set(false);
