@@ -26,7 +26,7 @@ async function seedSubmission(
   const owner = known.people.get(submission.owner);
   const made: { id: string }[] = await manager.query(
     `INSERT INTO submissions (reference, cedant_id, broker_firm_id, contact_id, treaty_year, inception_on, currency, note, owner_id)
-     VALUES ('LY-' || $4::int || '-' || lpad(nextval('submission_numbers')::text, 4, '0'), $1, $2, $3, $4::int, $5, $6, $7, $8) RETURNING id`,
+     VALUES ('S' || $4::int || '-' || lpad(nextval('submission_numbers')::text, 4, '0'), $1, $2, $3, $4::int, $5, $6, $7, $8) RETURNING id`,
     [known.cedants.get(submission.cedant), known.firms.get(submission.brokerFirm), contacts[0]?.id, submission.treatyYear, submission.inceptionOn, submission.currency, submission.note, owner],
   );
   const submissionId = made[0]?.id ?? '';

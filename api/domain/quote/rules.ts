@@ -50,8 +50,9 @@ export function reasonsAgainst(move: QuoteMove, quote: QuoteRecord, actor: Actor
     reasons.push({ code: 'promise', message: 'A firm quote is a promise until its validity ends: revise it, or let it lapse.' });
   }
   if (move === 'order') reasons.push(...validity(quote, today));
-  // A firm quote accepted in time is not refused for house reasons; an indication promised nothing.
-  if (move === 'bind' && quote.kind === 'indication') reasons.push(...staleness(quote));
+  // A firm quote accepted in time is not refused for house reasons; an indication promised nothing. That the book has
+  // moved refuses neither: with every contract it moves, and what is with a broker is not priced again.
+  if (move === 'bind' && quote.kind === 'indication') reasons.push(...staleness(quote).filter(({ code }) => code !== 'overtaken'));
   if (move === 'lapse' && quote.validUntil >= today) reasons.push({ code: 'validity', message: 'The quote is still valid.' });
   return reasons;
 }

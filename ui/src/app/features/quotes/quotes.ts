@@ -7,9 +7,11 @@ import { QUOTE_STATES, type QuoteState } from '@leanyear/vocabulary';
 import { AddressState } from '../../core/address-state';
 import { Api } from '../../core/api';
 import { EventStream } from '../../core/event-stream';
+import { LOCALE } from '../../core/locale';
 import { CellTemplate } from '../../shared/data-table/cell';
 import type { DataColumn } from '../../shared/data-table/columns';
 import { DataTable } from '../../shared/data-table/data-table';
+import { exactAmount } from '../../shared/format/numbers';
 import { StateChip } from '../../shared/state-chip/state-chip';
 import { StatePanel } from '../../shared/state-panel/state-panel';
 
@@ -53,6 +55,7 @@ import { StatePanel } from '../../shared/state-panel/state-panel';
 })
 export class Quotes {
   private readonly address = inject(AddressState);
+  private readonly locale = inject(LOCALE);
   private readonly query = toSignal(this.address.query);
   protected readonly states = QUOTE_STATES;
   protected readonly state = computed(() => QUOTE_STATES.find((one) => one === this.query()?.get('state')));
@@ -65,7 +68,7 @@ export class Quotes {
     { key: 'programme', header: 'Programme', value: (row) => row.programmeName },
     { key: 'broker', header: 'Broker', value: (row) => row.brokerFirm.name },
     { key: 'kind', header: 'Kind', value: (row) => row.kind },
-    { key: 'share', header: 'Our premium', value: (row) => Number(row.houseShareOfPremium), figures: true },
+    { key: 'share', header: 'Our premium', value: (row) => Number(row.houseShareOfPremium), text: (row) => exactAmount(row.houseShareOfPremium, this.locale), figures: true },
     { key: 'currency', header: 'Currency', value: (row) => row.currency },
     { key: 'adequacy', header: 'Lowest adequacy', value: (row) => Number(row.lowestAdequacy.toFixed(3)), figures: true },
     { key: 'until', header: 'Valid until', value: (row) => row.validUntil, figures: true },
