@@ -44,7 +44,8 @@ export interface WorkerDeps {
   readonly threadFile?: string;
 }
 
-function repricingDeps(dataSource: DataSource, notices: NoticeBoard): RepricingDeps {
+/** What re-pricing needs, over one database. */
+export function repricingDeps(dataSource: DataSource, notices: NoticeBoard): RepricingDeps {
   return {
     quotes: quotesRepository(dataSource, standingsUnder(ENGINE_VERSION)),
     runs: runsRepository(dataSource),
