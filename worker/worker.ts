@@ -9,6 +9,7 @@ import { createDataSource, type DataSource } from '../db/data-source';
 import { standingsUnder } from '../db/read-models/run-standing';
 import { readRunWork } from '../db/read-models/run-work';
 import { auditTrail } from '../db/repositories/audit-trail';
+import { presentBookVersion } from '../db/repositories/book';
 import { grantsRepository } from '../db/repositories/grants';
 import { capturedMails, mailOutbox, mailStore } from '../db/repositories/mails';
 import { clearOutbox, outboxRepository, relayOutbox } from '../db/repositories/outbox';
@@ -18,8 +19,9 @@ import { quotesRepository } from '../db/repositories/quotes';
 import { runDesk, runsRepository } from '../db/repositories/runs';
 import { zonesRepository } from '../db/repositories/zones';
 import { unitOfWork } from '../db/unit-of-work';
-import { computePool, THREAD_FILE } from './compute/pool';
+import { ComputeAborted, computePool, THREAD_FILE } from './compute/pool';
 import { repricing, type RepricingDeps } from './jobs/reprice/reprice';
+import { GivenUp } from './jobs/run/port';
 import { runJob } from './jobs/run/run-job';
 import { sendMail } from './jobs/send-mail/send-mail';
 import { openPostOffice } from './mail/post-office';
@@ -29,6 +31,7 @@ import { repeating } from './repeating';
 const RELAY_MILLISECONDS = 150;
 const SWEEP_MILLISECONDS = 1000;
 const LAPSE_MILLISECONDS = 60_000;
+const CATCH_UP_MILLISECONDS = 30_000;
 const SEAL_MILLISECONDS = 500;
 const CLEAR_MILLISECONDS = 3_600_000;
 const MAIL_OVERDUE_SECONDS = 30;
@@ -58,6 +61,7 @@ export function repricingDeps(dataSource: DataSource, notices: NoticeBoard): Rep
     unitOfWork: unitOfWork(dataSource),
     engineVersion: ENGINE_VERSION,
     today: () => new Date().toISOString().slice(0, 10),
+    bookVersion: () => presentBookVersion(dataSource),
     notify: (notice) => notices.publish(notice),
   };
 }
@@ -91,7 +95,10 @@ export async function openWorker(deps: WorkerDeps): Promise<OpenedWorker> {
           {
             desk,
             read: (id) => readRunWork(dataSource, id),
-            value: (inputs, onProgress, signal) => computer.value(inputs, onProgress, signal),
+            value: (inputs, onProgress, signal) =>
+              computer.value(inputs, onProgress, signal).catch((error: unknown) => {
+                throw error instanceof ComputeAborted ? new GivenUp() : error;
+              }),
             publish: (notice) => notices.publish(notice),
             report,
             mostAttempts: MOST_ATTEMPTS,
@@ -118,6 +125,7 @@ export async function openWorker(deps: WorkerDeps): Promise<OpenedWorker> {
       }
     }),
     repeating(LAPSE_MILLISECONDS, report, () => desksOwn.lapse()),
+    repeating(CATCH_UP_MILLISECONDS, report, () => desksOwn.catchUp()),
     repeating(CLEAR_MILLISECONDS, report, () => clearOutbox(dataSource)),
   ];
 

@@ -13,6 +13,14 @@ const notice = z.object({
   roles: z.array(z.enum(ROLES)).optional(),
 });
 
+function parse(text: string): ReturnType<typeof notice.safeParse> {
+  try {
+    return notice.safeParse(JSON.parse(text));
+  } catch {
+    return notice.safeParse(text);
+  }
+}
+
 /** A notice board between processes, on Redis publish/subscribe. Losing a notice loses nothing, so trouble is only reported. */
 export function redisNotices(redisUrl: string, onTrouble: (error: unknown) => void): Notices {
   const options = { maxRetriesPerRequest: 1, enableOfflineQueue: false, retryStrategy: (attempt: number) => Math.min(200 * attempt, 2000) };
@@ -23,12 +31,9 @@ export function redisNotices(redisUrl: string, onTrouble: (error: unknown) => vo
   receiver.on('error', onTrouble);
   receiver.subscribe(CHANNEL).catch(onTrouble);
   receiver.on('message', (_channel, text) => {
-    const parsed = notice.safeParse(JSON.parse(text));
-    if (!parsed.success) {
-      onTrouble(parsed.error);
-      return;
-    }
-    for (const listener of listeners) listener(parsed.data as Notice);
+    const parsed = parse(text);
+    if (parsed.success) for (const listener of listeners) listener(parsed.data as Notice);
+    else onTrouble(parsed.error);
   });
   return {
     async publish(said) {

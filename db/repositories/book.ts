@@ -1,9 +1,14 @@
 import { randomUUID } from 'node:crypto';
+import type { DataSource } from 'typeorm';
 import type { Book } from '../../api/domain/book/book';
 import { BookVersionRow, ContractLayerRow, ContractRow } from '../entities/book';
 import { managerOf } from '../unit-of-work';
 
 export const bookRepository: Book = {
+  async version(transaction) {
+    const heads: { version: number }[] = await managerOf(transaction).query('SELECT version FROM book_head');
+    return heads[0]?.version ?? 0;
+  },
   async enter(transaction, contract, cause) {
     const manager = managerOf(transaction);
     const heads: { version: number }[] = await manager.query('SELECT version FROM book_head FOR UPDATE');
@@ -34,9 +39,10 @@ export const bookRepository: Book = {
         premium,
       })),
     );
-    // The contract that this one renews is in the book as if renewed: it makes room in the same version.
+    // The expiring contract is in the book as if renewed: it makes room in the same version. What was bound here stays.
     const renewed: [{ id: string }[], number] = await manager.query(
-      'UPDATE contracts SET left_in = $2 WHERE programme_id = $1 AND id <> $3 AND left_in IS NULL RETURNING id',
+      `UPDATE contracts SET left_in = $2
+       WHERE programme_id = $1 AND id <> $3 AND origin = 'opening book' AND left_in IS NULL RETURNING id`,
       [contract.programmeId, version, contractId],
     );
     await manager.query('UPDATE zone_uses SET released_at = now() WHERE contract_id = ANY($1) AND released_at IS NULL', [
@@ -46,3 +52,9 @@ export const bookRepository: Book = {
     return { contractId, version };
   },
 };
+
+/** Version of the book as it stands; 0 while it is empty. */
+export async function presentBookVersion(dataSource: DataSource): Promise<number> {
+  const heads: { version: number }[] = await dataSource.query('SELECT version FROM book_head');
+  return heads[0]?.version ?? 0;
+}

@@ -101,7 +101,7 @@ describe('attempts at a run', () => {
     const reported: unknown[] = [];
     const stopping = deps({ value: () => Promise.reject(new GivenUp()), report: (error) => String(reported.push(error)) });
     for (const attempt of [1, 2, 3, 4]) {
-      await runJob(stopping, id);
+      await expect(runJob(stopping, id)).rejects.toThrow(GivenUp);
       expect(await bench.read(id)).toMatchObject({ state: 'queued', attempt, error: null });
     }
     expect(reported).toEqual([]);

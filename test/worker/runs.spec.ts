@@ -21,10 +21,12 @@ describe('runs through a worker', () => {
   beforeAll(async () => {
     bench = await openRunBench();
   }, 60_000);
-  afterEach(async () => {
-    await worker?.close();
+  const stop = async (): Promise<void> => {
+    const open = worker;
     worker = null;
-  });
+    await open?.close();
+  };
+  afterEach(stop);
   afterAll(() => bench.close());
 
   const open = async (queue: WakeQueue = memoryQueue(50)): Promise<void> => {
@@ -104,16 +106,14 @@ describe('runs through a worker', () => {
     const calm = await succeeded(await bench.run(200_000, programmeId));
     const id = await bench.run(200_000, programmeId);
     await working(id);
-    await worker?.close();
-    worker = null;
+    await stop();
     expect(await bench.read(id)).toMatchObject({ state: 'queued', attempt: 1 });
     const redis = await createTestRedis();
     await open(bullmqQueue(redis.url));
     const resumed = await succeeded(id);
     expect(resumed).toMatchObject({ attempt: 2, inputHash: calm.inputHash, resultHash: calm.resultHash });
     expect(await bench.counts(id)).toMatchObject({ acts: 1, ends: 1, series: 2 });
-    await worker?.close();
-    worker = null;
+    await stop();
     await redis.drop();
   }, 90_000);
 

@@ -49,13 +49,18 @@ export interface PresentInputs {
 export interface Runs {
   /** Gathers what a valuation of these terms would rest on, leaving the programme's own contracts out of the book. */
   present(transaction: Transaction, programmeId: string, terms: ProgrammeTermsRecord): Promise<PresentInputs>;
+  /** @throws Refused where the person's key has made another run meanwhile */
   create(transaction: Transaction, run: NewRun): Promise<string>;
   /** The run that this person made with this key, if any. */
   byKey(personId: string, key: string): Promise<string | null>;
-  /** Whether a re-pricing of this quote on this version of the book, or a later one, is under way or done. */
+  /** Whether a re-pricing of this quote on this version of the book, or a later one, has been started, however it ended. */
   repriced(transaction: Transaction, quoteId: string, bookVersion: number): Promise<boolean>;
   /** The quote that a run re-prices, with the run's state; null where it re-prices none. */
   repricing(runId: string): Promise<{ quoteId: string; state: RunState } | null>;
+  /** Whether a run values the same terms as another on a later version of the book. */
+  supersedes(transaction: Transaction, runId: string, otherId: string): Promise<boolean>;
+  /** Re-pricings that have succeeded, whose quotes are still in the house and rest on an older book. */
+  unrested(): Promise<string[]>;
   /** Ends a queued run, asks a running one to end. Answers the state it has then; null when there is no such run. */
   cancel(transaction: Transaction, runId: string): Promise<{ from: RunState; to: RunState } | null>;
 }
@@ -75,14 +80,18 @@ export interface Attempt {
 
 /** The runs' rows as the worker sees them. */
 export interface RunDesk {
-  /** Takes a run that nobody works on; null where it has ended or somebody does. */
+  /**
+   * Takes a run that nobody works on; null where it has ended or somebody does. A run whose workers died again and again
+   * fails here, and a cancel whose worker has died is carried out.
+   */
   begin(runId: string): Promise<Attempt | null>;
   /** Says that the attempt lives and how far it is; answers what is asked of it. */
   beat(attempt: Attempt, progress: Progress): Promise<'go on' | 'cancel' | 'lost'>;
   /** Stores the result with the yearly payoffs and wakes what follows, in one transaction. False: the attempt was overtaken. */
   succeed(attempt: Attempt, result: { json: unknown; hash: string; series: readonly { name: string; values: Float64Array }[] }): Promise<boolean>;
   fail(attempt: Attempt, words: string): Promise<void>;
-  cancelled(attempt: Attempt): Promise<void>;
+  /** False: the attempt was overtaken. */
+  cancelled(attempt: Attempt): Promise<boolean>;
   /** Gives the run back to the queue after unexpected trouble. */
   release(attempt: Attempt): Promise<void>;
   /** Runs that wait without a wake, or whose worker has been silent for too long. */

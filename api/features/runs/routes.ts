@@ -31,13 +31,22 @@ export function registerRuns(router: ApiRouter, deps: RunDeps): void {
   const tell = async (id: string, state: string) => deps.notices.publish({ topic: 'run', id, state });
 
   serve(router, startRunSpec, async ({ actor, params, body, idempotencyKey }) => {
-    const before = idempotencyKey === null ? null : await runs.byKey(actor.personId, idempotencyKey);
+    const madeBefore = async (): Promise<string | null> => {
+      const before = idempotencyKey === null ? null : await runs.byKey(actor.personId, idempotencyKey);
+      if (before === null) return null;
+      if ((await run(before)).programmeId === params.id) return before;
+      throw new Refused([{ code: 'key', message: 'This Idempotency-Key has made a run of another programme: send a new key with a new request.' }]);
+    };
+    const before = await madeBefore();
     if (before !== null) return run(before);
     const programme = await deps.programmes.byId(params.id);
     if (programme === null) throw new NotFound('programme');
     const id = await unitOfWork.run(async (transaction) => {
       const submission = await deps.submissions.lock(transaction, programme.submissionId);
       if (submission.state === 'closed') throw new Refused([{ code: 'closed', message: `Submission ${submission.reference} is closed; open it again first.` }]);
+      // The same request may have been at work while this one waited for the submission.
+      const meanwhile = await madeBefore();
+      if (meanwhile !== null) return meanwhile;
       const made = await startRun(runs, ENGINE_VERSION, transaction, {
         programmeId: programme.id,
         programmeVersion: programme.version,

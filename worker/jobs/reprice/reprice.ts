@@ -11,6 +11,8 @@ export interface RepricingDeps extends AuthorityDeps, ReferDeps, LapseDeps {
   readonly runs: Runs;
   readonly programmes: Programmes;
   readonly engineVersion: string;
+  /** Of the book as it stands. */
+  readonly bookVersion: () => Promise<number>;
   readonly notify: (notice: Notice) => Promise<void>;
 }
 
@@ -22,6 +24,8 @@ export interface Repricing {
   /** Rests a quote on the run that priced it again, and refers it again where authority over it is lost. */
   runEnded(runId: string): Promise<void>;
   lapse(): Promise<void>;
+  /** Does what the wakes of both would have done, had none been lost; what is done already is left alone. */
+  catchUp(): Promise<void>;
 }
 
 async function startFor(deps: RepricingDeps, quoteId: string, version: number): Promise<void> {
@@ -47,7 +51,9 @@ async function startFor(deps: RepricingDeps, quoteId: string, version: number): 
 async function restOn(deps: RepricingDeps, quoteId: string, runId: string): Promise<void> {
   await deps.unitOfWork.run(async (transaction) => {
     const quote = await deps.quotes.lock(transaction, quoteId);
-    if (quote === null || !IN_THE_HOUSE.includes(quote.state) || quote.run.id === runId) return;
+    if (quote === null || !IN_THE_HOUSE.includes(quote.state)) return;
+    // A later re-pricing may have been faster, and a draft may have been given other terms.
+    if (!(await deps.runs.supersedes(transaction, runId, quote.run.id))) return;
     await deps.quotes.rest(transaction, quote, runId);
     const rested = await deps.quotes.lock(transaction, quoteId);
     if (rested === null) return;
@@ -59,16 +65,24 @@ async function restOn(deps: RepricingDeps, quoteId: string, runId: string): Prom
 }
 
 export function repricing(deps: RepricingDeps): Repricing {
+  const priceAgain = async (version: number): Promise<void> => {
+    for (const quoteId of await deps.quotes.overtaken(version)) await startFor(deps, quoteId, version);
+  };
+  const rest = async (runId: string): Promise<void> => {
+    const about = await deps.runs.repricing(runId);
+    if (about === null || about.state !== 'succeeded') return;
+    await restOn(deps, about.quoteId, runId);
+    await deps.notify({ topic: 'quote', id: about.quoteId });
+  };
   return {
     async bookMoved(version) {
-      for (const quoteId of await deps.quotes.overtaken(version)) await startFor(deps, quoteId, version);
+      await priceAgain(version);
       await deps.notify({ topic: 'book', id: String(version) });
     },
-    async runEnded(runId) {
-      const about = await deps.runs.repricing(runId);
-      if (about === null || about.state !== 'succeeded') return;
-      await restOn(deps, about.quoteId, runId);
-      await deps.notify({ topic: 'quote', id: about.quoteId });
+    runEnded: rest,
+    async catchUp() {
+      await priceAgain(await deps.bookVersion());
+      for (const runId of await deps.runs.unrested()) await rest(runId);
     },
     async lapse() {
       for (const quoteId of await deps.quotes.lapsing(deps.today())) {

@@ -1,6 +1,14 @@
 import type { BasisTerms } from '../../../api/contract/house';
 import type { ProgrammeTermsRecord } from '../../../api/domain/programme/programme';
 
+/** Thrown where the worker itself gives the work up, as it does when it stops: no trouble of the run's. */
+export class GivenUp extends Error {
+  constructor() {
+    super('the worker stopped before the run had ended');
+    this.name = 'GivenUp';
+  }
+}
+
 /** Columns as the store reads them; see the reading side for units. */
 export interface CatalogueColumns {
   readonly catalogueId: string;

@@ -2,7 +2,7 @@ import type { Attempt, Progress, RunDesk } from '../../../api/domain/run/run';
 import type { Notice } from '../../../api/domain/shared/stream';
 import { EngineInputError, type Valuation, type ValuationInputs } from '../../engine';
 import { engineInputs } from './engine-inputs';
-import type { RunWork } from './port';
+import { GivenUp, type RunWork } from './port';
 import { resultHash, resultOf } from './result';
 
 const BEAT_MILLISECONDS = 500;
@@ -26,7 +26,11 @@ type Asked = 'go on' | 'cancel' | 'lost';
  */
 export async function runJob(deps: RunJobDeps, runId: string): Promise<void> {
   const attempt = await deps.desk.begin(runId);
-  if (attempt === null) return;
+  if (attempt === null) {
+    // It may just have ended, with nobody left to say so.
+    await deps.publish({ topic: 'run', id: runId });
+    return;
+  }
   const say = (state: string, progress?: Progress): Promise<void> => deps.publish({ topic: 'run', id: runId, state, ...(progress ? { progress } : {}) });
   const stop = new AbortController();
   const heart = beating(deps, attempt, stop);
@@ -60,6 +64,9 @@ export async function runJob(deps: RunJobDeps, runId: string): Promise<void> {
     else if (error instanceof EngineInputError) {
       await deps.desk.fail(attempt, error.message);
       await say('failed');
+    } else if (error instanceof GivenUp) {
+      await deps.desk.release(attempt);
+      throw error;
     } else await giveBackOrFail(deps, attempt, error, say);
   } finally {
     await heart.end();
@@ -67,8 +74,7 @@ export async function runJob(deps: RunJobDeps, runId: string): Promise<void> {
 }
 
 async function endCancelled(deps: RunJobDeps, attempt: Attempt, say: (state: string) => Promise<void>): Promise<void> {
-  await deps.desk.cancelled(attempt);
-  await say('cancelled');
+  if (await deps.desk.cancelled(attempt)) await say('cancelled');
 }
 
 async function giveBackOrFail(deps: RunJobDeps, attempt: Attempt, error: unknown, say: (state: string) => Promise<void>): Promise<void> {
