@@ -1,21 +1,8 @@
 import { parentPort } from 'node:worker_threads';
-import { EngineInputError, joinBlocks, prepare, valueBlock, type BlockResult, type Prepared } from '../engine';
-import type { Answer, Ask } from './messages';
+import { EngineInputError, joinBlocks, prepare, valueBlock, type Prepared } from '../engine';
+import { buffersOf, type Answer, type Ask } from './messages';
 
 let prepared: Prepared | null = null;
-
-function buffersOf(block: BlockResult): ArrayBuffer[] {
-  const arrays = [
-    block.bookLoss,
-    ...block.payoffs,
-    block.recoverySums,
-    block.recoverySquares,
-    block.occurrenceLoss,
-    block.aggregateLoss,
-    ...block.hits.flatMap((hits) => [hits.state, hits.event, hits.recovery]),
-  ];
-  return arrays.map((array) => array.buffer as ArrayBuffer);
-}
 
 function answer(ask: Ask): { answer: Answer; transfer: ArrayBuffer[] } {
   if (ask.kind === 'prepare') {

@@ -14,3 +14,17 @@ export type Answer =
   /** The inputs cannot be priced: words for a person. */
   | { readonly kind: 'refused'; readonly words: string }
   | { readonly kind: 'broken'; readonly stack: string };
+
+/** Memory of a block, to be handed to another thread instead of copied. */
+export function buffersOf(block: BlockResult): ArrayBuffer[] {
+  const arrays = [
+    block.bookLoss,
+    ...block.payoffs,
+    block.recoverySums,
+    block.recoverySquares,
+    block.occurrenceLoss,
+    block.aggregateLoss,
+    ...block.hits.flatMap((hits) => [hits.state, hits.event, hits.recovery]),
+  ];
+  return arrays.map((array) => array.buffer as ArrayBuffer);
+}

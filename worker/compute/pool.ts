@@ -2,7 +2,7 @@ import { availableParallelism } from 'node:os';
 import { join } from 'node:path';
 import { Worker } from 'node:worker_threads';
 import { EngineInputError, type BlockResult, type Valuation, type ValuationInputs } from '../engine';
-import type { Answer, Ask } from './messages';
+import { buffersOf, type Answer, type Ask } from './messages';
 
 /** The compiled file of a thread. */
 export const THREAD_FILE = join(__dirname, 'compute-thread.js');
@@ -43,10 +43,10 @@ class Thread {
     this.worker.on('exit', () => this.pending?.reject(new ComputeAborted()));
   }
 
-  ask(ask: Ask): Promise<Answer> {
+  ask(ask: Ask, transfer: readonly ArrayBuffer[] = []): Promise<Answer> {
     return new Promise((resolve, reject) => {
       this.pending = { resolve, reject };
-      this.worker.postMessage(ask);
+      this.worker.postMessage(ask, transfer);
     });
   }
 
@@ -85,7 +85,7 @@ export function computePool(size = availableParallelism(), file = THREAD_FILE): 
       }
     };
     await Promise.all(crew.map(serveBlocks));
-    const joined = await crew[0]?.ask({ kind: 'join', blocks });
+    const joined = await crew[0]?.ask({ kind: 'join', blocks }, blocks.flatMap(buffersOf));
     if (joined?.kind !== 'joined') throw new Error('a thread answered something else than the join');
     return joined.valuation;
   };
