@@ -83,6 +83,36 @@ describe('when the book moves', () => {
     expect(mails.rowCount).toBe(2);
   });
 
+  it('what lost wakes left undone is caught up once, and a failed re-pricing is not begun again and again', async () => {
+    const id = await approved();
+    await moveBook();
+    await own.catchUp();
+    await own.catchUp();
+    const runId = await end(id, 1_000_000);
+    await own.catchUp();
+    await own.catchUp();
+    const after = await read(id);
+    expect(after).toMatchObject({ state: 'approved', runId, runStanding: 'current' });
+    expect(after.history.filter(({ move }) => move.includes('priced again'))).toHaveLength(1);
+    await moveBook();
+    await own.catchUp();
+    await api.owner.query(`UPDATE runs SET state = 'failed', error = 'as it happens' WHERE reprices_quote_id = $1 AND state = 'queued'`, [id]);
+    await own.catchUp();
+    const runs = await api.owner.query('SELECT state FROM runs WHERE reprices_quote_id = $1 ORDER BY created_at', [id]);
+    expect(runs.rows).toEqual([{ state: 'succeeded' }, { state: 'failed' }]);
+  });
+
+  it('a re-pricing on an older book that ends later changes nothing', async () => {
+    const id = await approved();
+    await own.bookMoved(await moveBook());
+    const older = await end(id, 1_000_000);
+    await own.bookMoved(await moveBook());
+    const newer = await end(id, 1_000_001);
+    await own.runEnded(newer);
+    await own.runEnded(older);
+    expect(await read(id)).toMatchObject({ runId: newer, runStanding: 'current' });
+  });
+
   it('a quote whose validity has passed lapses and gives its capacity back; one with the broker is left alone', async () => {
     const [gone, stays] = [await approved(), await approved()];
     for (const id of [gone, stays]) await una('post', `/quotes/${id}/issue`).send({}).expect(200);

@@ -103,8 +103,8 @@ describe('runs through a worker', () => {
   it('goes on where a stopped worker left, to the same bytes, on Redis and in memory', async () => {
     const programmeId = await bench.programme();
     await open();
-    const calm = await succeeded(await bench.run(200_000, programmeId));
-    const id = await bench.run(200_000, programmeId);
+    const calm = await succeeded(await bench.run(120_000, programmeId));
+    const id = await bench.run(120_000, programmeId);
     await working(id);
     await stop();
     expect(await bench.read(id)).toMatchObject({ state: 'queued', attempt: 1 });
