@@ -1,7 +1,7 @@
 import type { GrantRecord } from '../grant/grant';
 import { amountInWords, amountOf, numberOf, timesShare, unitsOf, type Units } from '../money';
 import type { QuoteRecord } from '../quote/quote';
-import { Refused } from '../shared/errors';
+import { Refused, type Reason } from '../shared/errors';
 import type { AuthorityRule } from '../vocabulary';
 
 /** A quoted layer with the figures that authority is measured by. */
@@ -32,7 +32,7 @@ export function measuredLayers(quote: QuoteRecord): MeasuredLayer[] {
       writtenLine: layer.writtenLine,
       lineAmount: timesShare(timesShare(unitsOf(layer.limit), layer.writtenLine), quote.run.exchangeRate),
       expectedLoss: figures?.expectedLoss ?? 0,
-      walkAwayPremium: figures?.walkAwayPremium ?? 0,
+      walkAwayPremium: figures?.walkAwayPremium ?? Number.NaN,
       technicalPremium,
       adequacy: technicalPremium > 0 ? numberOf(premium) / technicalPremium : 0,
     };
@@ -48,6 +48,8 @@ export interface RuleOutcome {
   readonly message: string;
 }
 
+const NO_GRANT = 'no authority granted';
+
 const percent = (share: number): string => `${Number((share * 100).toFixed(4))}%`;
 
 function outcome(rule: AuthorityRule, layer: MeasuredLayer, figure: string, bound: string | null, pass: boolean, what: string): RuleOutcome {
@@ -56,7 +58,7 @@ function outcome(rule: AuthorityRule, layer: MeasuredLayer, figure: string, boun
     rule,
     layer: layer.name,
     figure,
-    bound: bound ?? 'no authority granted',
+    bound: bound ?? NO_GRANT,
     pass: held && pass,
     message: !held
       ? `${layer.name}: ${what} ${figure}, and no authority is granted.`
@@ -69,7 +71,8 @@ function outcome(rule: AuthorityRule, layer: MeasuredLayer, figure: string, boun
 function underGrant(layers: readonly MeasuredLayer[], grant: GrantRecord | null): RuleOutcome[] {
   return layers.flatMap((layer) => {
     const mostAmount = grant === null ? 0n : unitsOf(grant.largestLineAmount);
-    const below = numberOf(layer.premium) < layer.walkAwayPremium;
+    // A figure that the run does not have is no authority either.
+    const below = !(numberOf(layer.premium) >= layer.walkAwayPremium);
     return [
       outcome('largest line', layer, percent(layer.writtenLine), grant && `a line of ${percent(grant.largestLineShare)}`, layer.writtenLine <= (grant?.largestLineShare ?? -1), 'a written line of'),
       outcome('largest line', layer, amountInWords(layer.lineAmount), grant && `a line of ${amountInWords(mostAmount)}`, layer.lineAmount <= mostAmount, 'a line amount of'),
@@ -92,6 +95,13 @@ export function evaluateAuthority(layers: readonly MeasuredLayer[], grants: read
   return candidates.reduce((best, next) => (failures(next) < failures(best) ? next : best));
 }
 
+export function failuresAsReasons(outcomes: readonly RuleOutcome[]): Reason[] {
+  return outcomes.filter(({ pass }) => !pass).map(({ rule, message }) => ({ code: rule, message }));
+}
+
+/** Whether no grant at all stands behind these outcomes. */
+export const holdsNone = (outcomes: readonly RuleOutcome[]): boolean => outcomes.every(({ bound }) => bound === NO_GRANT);
+
 const issued = new WeakSet<Approval>();
 
 /** Proof that a quote, in one version, is within somebody's authority. Only `enforceAuthority` makes one. */
@@ -108,10 +118,7 @@ export class Approval {
  * @throws Refused with every rule that fails
  */
 export function enforceAuthority(quote: QuoteRecord, outcomes: readonly RuleOutcome[], by: string): Approval {
-  const failed = outcomes.filter(({ pass }) => !pass);
-  if (outcomes.length === 0 || failed.length > 0) {
-    throw new Refused(failed.map(({ rule, message }) => ({ code: rule, message })));
-  }
+  if (outcomes.length === 0 || outcomes.some(({ pass }) => !pass)) throw new Refused(failuresAsReasons(outcomes));
   const approval = new Approval(quote.id, quote.version, by);
   issued.add(approval);
   return approval;

@@ -15,6 +15,7 @@ export interface NewContract {
 }
 
 export interface Book {
+  version(transaction: Transaction): Promise<number>;
   /**
    * Enters a contract as the next version of the book; what it renews leaves in the same version. Versions are
    * consecutive: the head's row is locked.

@@ -36,9 +36,10 @@ export async function refer(
   note: string,
 ): Promise<void> {
   await deps.quotes.move(transaction, quote, 'referred', by.personId === null ? {} : { submittedBy: by.personId, decidedBy: null, decisionNote: null });
-  await auditMove(deps, transaction, by, quote, 'submit', 'referred', note || failures.map(({ message }) => message).join(' '));
+  await auditMove(deps, transaction, by, quote, by.personId === null ? 'referred again' : 'submit', 'referred', note || failures.map(({ message }) => message).join(' '));
   const people = await deps.people.list(transaction);
-  const seniors = people.filter((p) => p.role === 'senior underwriter' && p.active && p.id !== by.personId && p.id !== quote.author.id);
+  const own = [by.personId ?? quote.submittedBy?.id, quote.author.id];
+  const seniors = people.filter((p) => p.role === 'senior underwriter' && p.active && !own.includes(p.id));
   for (const senior of seniors) {
     await deps.mails.put(transaction, {
       kind: 'referral waiting',

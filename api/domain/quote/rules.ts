@@ -1,3 +1,4 @@
+import { failuresAsReasons, holdsNone, type RuleOutcome } from '../authority/authority';
 import type { Actor } from '../shared/actor';
 import type { Reason } from '../shared/errors';
 import type { Permission, QuoteMove } from '../vocabulary';
@@ -35,7 +36,7 @@ function validity(quote: QuoteRecord, today: string): Reason[] {
     : [];
 }
 
-/** What stands against a move now, all at once; authority and capacity are looked at where they are taken. */
+/** What stands against a move now, all at once; authority is the next function, capacity is looked at where it is taken. */
 export function reasonsAgainst(move: QuoteMove, quote: QuoteRecord, actor: Actor | null, today: string): Reason[] {
   const reasons: Reason[] = [];
   if (!TRANSITIONS[move].from.includes(quote.state)) {
@@ -57,6 +58,16 @@ export function reasonsAgainst(move: QuoteMove, quote: QuoteRecord, actor: Actor
   return reasons;
 }
 
+/**
+ * What the actor's own authority has against a move. Who clears must hold it over the quote, and who binds too; where a
+ * senior has cleared this very quote, who binds needs a grant in force, whatever its bounds.
+ */
+export function authorityAgainst(move: QuoteMove, quote: QuoteRecord, outcomes: readonly RuleOutcome[]): Reason[] {
+  if (move !== 'clear' && move !== 'bind') return [];
+  const cleared = move === 'bind' && quote.decidedBy !== null && quote.decidedBy.id !== quote.submittedBy?.id;
+  return cleared && !holdsNone(outcomes) ? [] : failuresAsReasons(outcomes);
+}
+
 export interface MoveOffer {
   readonly move: QuoteMove;
   readonly label: string;
@@ -65,15 +76,18 @@ export interface MoveOffer {
   readonly needsNote: boolean;
 }
 
-/** The moves that could come next for a person of the house, with what stands against each. */
-export function movesFor(quote: QuoteRecord, actor: Actor, today: string): MoveOffer[] {
+/**
+ * The moves that could come next for a person of the house, with what stands against each.
+ * @param authority every rule of the actor's own authority over the quote
+ */
+export function movesFor(quote: QuoteRecord, actor: Actor, authority: readonly RuleOutcome[], today: string): MoveOffer[] {
   return (Object.keys(TRANSITIONS) as QuoteMove[])
     .filter((move) => {
       const permission = PERMISSION[move];
       return permission !== undefined && actor.permissions.includes(permission) && TRANSITIONS[move].from.includes(quote.state);
     })
     .map((move) => {
-      const reasons = reasonsAgainst(move, quote, actor, today);
+      const reasons = [...reasonsAgainst(move, quote, actor, today), ...authorityAgainst(move, quote, authority)];
       const { label, needsNote } = TRANSITIONS[move];
       return { move, label, allowed: reasons.length === 0, reasons, needsNote };
     });

@@ -35,6 +35,9 @@ export async function openLink(deps: BrokerDeps, token: string): Promise<LinkRec
 export async function mailCode(deps: BrokerDeps, link: LinkRecord): Promise<{ sentTo: string; expiresInSeconds: number }> {
   const quote = await deps.quotes.read(link.quoteId);
   if (quote === null) throw new NotFound('quote');
+  // A code serves to decline as well, which is open for longer than an order.
+  const reasons = reasonsAgainst('broker decline', quote, null, deps.today());
+  if (reasons.length > 0) throw new Refused(reasons);
   await deps.unitOfWork.run(async (transaction) => {
     if ((await deps.links.recentCodes(transaction, link.id)) >= CODES_AN_HOUR) {
       throw new Refused([{ code: 'codes', message: 'Five codes were sent within an hour: wait before asking for another.' }]);

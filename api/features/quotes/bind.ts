@@ -1,9 +1,9 @@
-import { enforceAuthority } from '../../domain/authority/authority';
 import { twelveMonthsFrom } from '../../domain/book/book';
 import { capacityNeeded } from '../../domain/capacity/capacity';
 import type { FrozenLayer, QuoteRecord } from '../../domain/quote/quote';
 import { auditMove } from '../../domain/quote/audit-move';
 import { authorityOver } from '../../domain/quote/refer';
+import { authorityAgainst } from '../../domain/quote/rules';
 import type { Actor } from '../../domain/shared/actor';
 import { Refused } from '../../domain/shared/errors';
 import { lockForMove, type QuoteDeps } from './deps';
@@ -21,10 +21,9 @@ function boundLine(quote: QuoteRecord, layer: FrozenLayer): number {
  */
 export async function bindQuote(deps: QuoteDeps, actor: Actor, id: string, note: string): Promise<void> {
   await deps.unitOfWork.run(async (transaction) => {
-    const quote = await lockForMove(deps, transaction, id, 'bind', actor);
-    // Who binds must hold authority over it, unless a senior has cleared this very quote.
-    const cleared = quote.decidedBy !== null && quote.decidedBy.id !== quote.submittedBy?.id;
-    if (!cleared) enforceAuthority(quote, await authorityOver(deps, quote, actor.personId, transaction), actor.personId);
+    const quote = await lockForMove(deps, transaction, id, 'bind', actor, async (one) =>
+      authorityAgainst('bind', one, await authorityOver(deps, one, actor.personId, transaction)),
+    );
     const layers = quote.terms.layers.filter((layer) => boundLine(quote, layer) > 0);
     if (layers.length === 0) throw new Refused([{ code: 'order', message: 'The order names no layer of this quote.' }]);
     const { contractId, version } = await deps.book.enter(

@@ -7,11 +7,12 @@ import type { QuoteLinks, Quotes } from '../../domain/quote/ports';
 import type { QuoteRecord } from '../../domain/quote/quote';
 import type { AuditTrail } from '../../domain/shared/audit';
 import type { Actor } from '../../domain/shared/actor';
-import { NotFound, Refused } from '../../domain/shared/errors';
+import { NotFound, Refused, type Reason } from '../../domain/shared/errors';
 import type { Outbox } from '../../domain/shared/outbox';
 import type { Notice } from '../../domain/shared/stream';
 import type { Transaction, UnitOfWork } from '../../domain/shared/transaction';
 import { reasonsAgainst } from '../../domain/quote/rules';
+import { TRANSITIONS } from '../../domain/quote/transitions';
 import type { QuoteMove } from '../../domain/vocabulary';
 
 export interface QuoteDeps {
@@ -32,12 +33,21 @@ export interface QuoteDeps {
 
 /**
  * Locks a quote for a move that nothing stands against.
+ * @param further what else may stand against it, asked only of a quote in the right state
  * @throws NotFound, or Refused with every reason at once
  */
-export async function lockForMove(deps: QuoteDeps, transaction: Transaction, id: string, move: QuoteMove, actor: Actor | null): Promise<QuoteRecord> {
+export async function lockForMove(
+  deps: QuoteDeps,
+  transaction: Transaction,
+  id: string,
+  move: QuoteMove,
+  actor: Actor | null,
+  further: (quote: QuoteRecord) => Promise<Reason[]> = () => Promise.resolve([]),
+): Promise<QuoteRecord> {
   const quote = await deps.quotes.lock(transaction, id);
   if (quote === null) throw new NotFound('quote');
   const reasons = reasonsAgainst(move, quote, actor, deps.today());
+  if (TRANSITIONS[move].from.includes(quote.state)) reasons.push(...(await further(quote)));
   if (reasons.length > 0) throw new Refused(reasons);
   return quote;
 }

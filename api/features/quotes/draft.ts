@@ -89,6 +89,8 @@ export async function reviseQuote(deps: QuoteDeps, actor: Actor, id: string, not
       note: quote.note,
       authorId: actor.personId,
     });
+    // With the broker it was not priced again; back in the house it is.
+    if (quote.run.standing === 'overtaken') await deps.outbox.put(transaction, 'book.moved', String(await deps.book.version(transaction)));
     await deps.audit.append(transaction, { actorId: actor.personId, actor: actor.name, action: 'quote draft', subject: 'quote', subjectId: next, from: null, to: 'draft', note: `revises ${quote.reference}, version ${quote.number}` });
     return next;
   });

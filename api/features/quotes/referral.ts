@@ -1,6 +1,7 @@
 import { enforceAuthority } from '../../domain/authority/authority';
 import { auditMove } from '../../domain/quote/audit-move';
 import { authorityOver, refer } from '../../domain/quote/refer';
+import { authorityAgainst } from '../../domain/quote/rules';
 import type { QuoteRecord } from '../../domain/quote/quote';
 import type { Actor } from '../../domain/shared/actor';
 import type { Transaction } from '../../domain/shared/transaction';
@@ -36,8 +37,9 @@ async function tellSubmitter(deps: QuoteDeps, transaction: Transaction, quote: Q
 /** Clears a referral within the senior's own bounds. */
 export async function clearQuote(deps: QuoteDeps, actor: Actor, id: string, note: string): Promise<void> {
   await deps.unitOfWork.run(async (transaction) => {
-    const quote = await lockForMove(deps, transaction, id, 'clear', actor);
-    const approval = enforceAuthority(quote, await authorityOver(deps, quote, actor.personId, transaction), actor.personId);
+    const over = (quote: QuoteRecord) => authorityOver(deps, quote, actor.personId, transaction);
+    const quote = await lockForMove(deps, transaction, id, 'clear', actor, async (one) => authorityAgainst('clear', one, await over(one)));
+    const approval = enforceAuthority(quote, await over(quote), actor.personId);
     await deps.quotes.approve(transaction, quote, approval, { decidedBy: actor.personId, decisionNote: note || null });
     await auditMove(deps, transaction, actor, quote, 'clear', 'approved', note);
     await tellSubmitter(deps, transaction, quote, actor, 'cleared', note);

@@ -61,7 +61,7 @@ export async function quoteView(deps: QuoteDeps, quote: QuoteRecord, actor: Acto
         premium: amountOf(premium),
         rateOnLine: numberOf(premium) / numberOf(unitsOf(layer.limit)),
         expectedLoss: figures?.expectedLoss ?? 0,
-        walkAwayPremium: figures?.walkAwayPremium ?? 0,
+        walkAwayPremium: Number.isFinite(figures?.walkAwayPremium) ? (figures?.walkAwayPremium ?? 0) : 0,
         technicalPremium: figures?.technicalPremium ?? 0,
         adequacy: figures?.adequacy ?? 0,
         lineAmount: figures === undefined ? '0' : lineAmountText(figures),
@@ -77,7 +77,7 @@ export async function quoteView(deps: QuoteDeps, quote: QuoteRecord, actor: Acto
     order: quote.order === null ? null : { ...quote.order, layers: [...quote.order.layers] },
     contractId: quote.contractId,
     authority,
-    moves: movesFor(quote, actor, deps.today()),
+    moves: movesFor(quote, actor, authority, deps.today()),
     history: await deps.quotes.history(quote.id),
   };
 }
