@@ -60,7 +60,8 @@ async function restOn(deps: RepricingDeps, quoteId: string, runId: string): Prom
     await auditMove(deps, transaction, SYSTEM, rested, 'priced again on the new book', rested.state, null);
     if (rested.state !== 'approved' || rested.decidedBy === null) return;
     const failures = (await authorityOver(deps, rested, rested.decidedBy.id, transaction)).filter(({ pass }) => !pass);
-    if (rested.run.flagged || failures.length > 0) await refer(deps, transaction, rested, SYSTEM, failures, '');
+    const why = rested.run.flagged ? 'The price on the new book failed its own check.' : '';
+    if (rested.run.flagged || failures.length > 0) await refer(deps, transaction, rested, SYSTEM, failures, why);
   });
 }
 

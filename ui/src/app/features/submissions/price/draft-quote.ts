@@ -79,8 +79,13 @@ export class DraftQuote {
   });
 
   constructor() {
+    let drafted = '';
     effect(() => {
-      const layers = (this.run().result?.layers ?? []).map(({ key, name, technicalPremium }) => ({
+      const run = this.run();
+      // Read again because the book moved, it is the same price still: what was typed on it stays.
+      if (drafted === run.id) return;
+      drafted = run.id;
+      const layers = (run.result?.layers ?? []).map(({ key, name, technicalPremium }) => ({
         key,
         name,
         technical: technicalPremium,

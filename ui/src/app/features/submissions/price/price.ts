@@ -49,11 +49,7 @@ export class Price {
   protected readonly refusal = signal<readonly string[]>([]);
   protected readonly busy = signal(false);
 
-  protected readonly present = computed(() => {
-    if (!this.store.programmes.hasValue()) return null;
-    const all = this.store.programmes.value();
-    return all.find((one) => one.id === this.programme()) ?? all[0] ?? null;
-  });
+  protected readonly present = computed(() => this.store.programmeAt(this.programme()));
   protected readonly runs = this.api.resource(listRuns, () => {
     const present = this.present();
     return present === null ? undefined : { params: { id: present.id } };

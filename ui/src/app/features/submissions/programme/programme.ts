@@ -13,6 +13,7 @@ import { Notices } from '../../../core/notices';
 import { asProblem } from '../../../core/problem';
 import { SessionStore } from '../../../core/session';
 import { AmountInput } from '../../../shared/amount/amount-input';
+import { askBeforeLeaving } from '../../../shared/confirm/leaving';
 import { faultOf, sayFaults } from '../../../shared/form/faults';
 import { Icon } from '../../../shared/icon/icon';
 import { PercentInput } from '../../../shared/percent-field/percent-input';
@@ -50,14 +51,12 @@ export class ProgrammePage {
   protected readonly refusal = signal<readonly string[]>([]);
   /** Set when somebody else saved meanwhile: their terms, beside ours. */
   protected readonly theirs = signal<Programme | null>(null);
+  /** The programme whose terms the sheet holds, which is not the one in the address while unsaved ones are kept. */
+  private edited: Programme | null = null;
   private version = 0;
   private following: Subscription | null = null;
 
-  protected readonly present = computed<Programme | null>(() => {
-    if (!this.store.programmes.hasValue() || this.programme() === 'new') return null;
-    const all = this.store.programmes.value();
-    return all.find((one) => one.id === this.programme()) ?? all[0] ?? null;
-  });
+  protected readonly present = computed(() => this.store.programmeAt(this.programme()));
 
   constructor() {
     effect(() => {
@@ -65,6 +64,7 @@ export class ProgrammePage {
       const started = this.programme() === 'new' ? this.blank() : (present?.terms ?? null);
       untracked(() => {
         if (this.hasUnsaved()) return;
+        this.edited = present;
         this.version = present?.version ?? 0;
         this.follow(started);
       });
@@ -136,6 +136,10 @@ export class ProgrammePage {
   }
 
   protected async open(id: string): Promise<void> {
+    if (this.hasUnsaved()) {
+      if (!(await askBeforeLeaving())) return;
+      this.form()?.markAsPristine();
+    }
     await this.address.set({ programme: id, run: null });
   }
 
@@ -149,21 +153,23 @@ export class ProgrammePage {
       this.refusal.set(['Something in the terms is not right: see the cells marked.']);
       return null;
     }
-    if (!form.dirty && this.programme() !== 'new') return this.present();
+    if (!form.dirty && this.edited !== null) return this.edited;
     this.busy.set(true);
     this.refusal.set([]);
     const body = this.read(form);
-    const present = this.present();
+    const edited = this.edited;
     try {
       const call =
-        present === null
+        edited === null
           ? this.api.send(createProgramme, { params: { id: submissionId }, body })
-          : this.api.send(updateProgramme, { params: { id: present.id }, body, ifMatch: this.version });
+          : this.api.send(updateProgramme, { params: { id: edited.id }, body, ifMatch: this.version });
       const saved = await firstValueFrom(call);
-      form.markAsPristine();
+      // What was typed while the answer was on its way is still to be saved.
+      if (JSON.stringify(this.read(form)) === JSON.stringify(body)) form.markAsPristine();
+      this.edited = saved;
       this.version = saved.version;
       this.theirs.set(null);
-      this.store.programmes.reload();
+      this.store.keep(saved);
       await this.address.set({ programme: saved.id });
       this.notices.done('Terms saved.');
       return saved;
@@ -178,10 +184,10 @@ export class ProgrammePage {
   }
 
   private async showTheirs(): Promise<void> {
-    const present = this.present();
-    if (present === null) return;
+    const edited = this.edited;
+    if (edited === null) return;
     const { readProgramme } = await import('@leanyear/contract/programmes');
-    this.theirs.set(await firstValueFrom(this.api.send(readProgramme, { params: { id: present.id } })));
+    this.theirs.set(await firstValueFrom(this.api.send(readProgramme, { params: { id: edited.id } })));
   }
 
   /** Keeps what is typed here and saves it over theirs with the next save. */
