@@ -13,7 +13,7 @@ import { Refusal } from './refusal.cjs';
 /** What each command needs of Debian; what is missing is installed where that is allowed. */
 const DEBIAN = {
   start: { required: ['postgresql'], wished: ['redis-server'] },
-  test: { required: ['postgresql', 'redis-server', 'chromium', 'python3-scipy'], wished: [] },
+  test: { required: ['postgresql', 'redis-server', 'chromium', 'python3-scipy', 'curl'], wished: [] },
   prove: { required: ['debootstrap', 'git'], wished: [] },
 };
 

@@ -26,6 +26,7 @@ const PRESENT = /** @type {Record<string, () => boolean>} */ ({
   'python3-scipy': () => spawnSync('python3', ['-c', 'import scipy'], { stdio: 'ignore' }).status === 0,
   debootstrap: () => onPath('debootstrap'),
   git: () => onPath('git'),
+  curl: () => onPath('curl'),
 });
 
 /**

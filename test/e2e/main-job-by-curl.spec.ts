@@ -33,7 +33,7 @@ describe('the main job, as the README prints it', () => {
       SENIOR: passwordOf('sena.orrick@house.example'),
       BROKER: passwordOf('quinn@quillon.example'),
     };
-    const { stdout } = await promisify(execFile)('bash', ['-eu', '-c', printedJob()], { cwd: ROOT, env, timeout: 90_000 });
+    const { stdout } = await promisify(execFile)('bash', ['--norc', '-eu', '-c', printedJob()], { cwd: ROOT, env, timeout: 90_000 });
     const lines = stdout.trim().split('\n');
     expect(lines[0]).toBe('released: 400 events, 1.10 a year');
     expect(lines[1]).toMatch(/^First: expected loss \d+\.\d\d% of limit, technical rate on line \d+\.\d\d%$/);
