@@ -8,10 +8,13 @@ const server = (displayName, testMatch, extra = {}) => ({
   transform: { '^.+\\.ts$': ['ts-jest', { tsconfig: 'tsconfig.jest.json' }] },
   ...extra,
 });
+const PUBLISHED = '<rootDir>/test/reference/published/**/*.spec.ts';
 module.exports = {
   projects: [
-    server('unit', ['<rootDir>/{api,db,worker,fixtures}/**/*.spec.ts']),
+    // What is published is held against the functions alone: it needs no servers.
+    server('unit', ['<rootDir>/{api,db,worker,fixtures}/**/*.spec.ts', PUBLISHED]),
     server('server', ['<rootDir>/test/{api,db,worker,reference}/**/*.spec.ts'], {
+      testPathIgnorePatterns: ['/node_modules/', '<rootDir>/test/reference/published/'],
       setupFiles: ['<rootDir>/test/support/require-servers.ts'],
     }),
     server('faults', ['<rootDir>/test/faults/**/*.spec.ts'], {

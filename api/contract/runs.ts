@@ -12,11 +12,13 @@ const estimate = z.object({ value: z.number(), standardError: z.number() });
 /** Return periods (years) at which exceedance is read; 1 in N is a yearly probability of 1/N. */
 const exceedancePoint = z.object({
   years: z.number(),
-  occurrence: z.number().nullable(),
-  occurrenceTail: z.number().nullable(),
-  aggregate: z.number().nullable(),
-  aggregateTail: z.number().nullable(),
+  occurrence: estimate.nullable(),
+  occurrenceTail: estimate.nullable(),
+  aggregate: estimate.nullable(),
+  aggregateTail: estimate.nullable(),
 });
+
+const houseTailPoint = z.object({ years: z.number(), loss: z.number(), lossError: z.number() });
 
 /** The premium taken apart: amounts for 100%, programme currency; the steps add up to the marginal premium. */
 const premiumSplit = z.object({
@@ -48,9 +50,9 @@ export const layerResult = z.object({
   attachmentProbability: estimate,
   exhaustionProbability: estimate,
   /** P(Z > 0) under the price-weighted probabilities. */
-  pricedAttachmentProbability: z.number(),
+  pricedAttachmentProbability: estimate,
   /** E[ρ], reinstatement premium as a share of the layer premium. */
-  expectedReinstatement: z.number(),
+  expectedReinstatement: estimate,
   marginalPremium: estimate,
   walkAwayPremium: estimate,
   /** The layer's part of the programme walk-away; the parts add up. */
@@ -59,6 +61,8 @@ export const layerResult = z.object({
   technicalRateOnLine: z.number(),
   /** (premium + expected reinstatement premium) ÷ expected loss, at the technical premium; null without expected loss. */
   multiple: z.number().nullable(),
+  /** (E[m·Z]/E[m] − E[Z])/sd(Z): the standard-deviation load that the price implies, for comparison only. */
+  impliedDeviationLoad: z.number().nullable(),
   split: premiumSplit,
   effectiveStates: z.number(),
   /** Fewer than 2,500 effective states carry the price. */
@@ -96,8 +100,17 @@ export const runResult = z.object({
   layers: z.array(layerResult),
   programme: z.object({
     expectedLoss: estimate,
+    expectedLossShareOfLimit: z.number(),
     standardDeviation: z.number(),
-    walkAwayPremium: z.number(),
+    /** Any layer pays; all of them are exhausted. */
+    attachmentProbability: estimate,
+    exhaustionProbability: estimate,
+    pricedAttachmentProbability: estimate,
+    effectiveStates: z.number(),
+    thin: z.boolean(),
+    /** At our written lines, as are the walk-away and the technical premium. */
+    marginalPremium: z.number(),
+    walkAwayPremium: estimate,
     technicalPremium: z.number(),
     exceedance: z.array(exceedancePoint),
   }),
@@ -111,8 +124,8 @@ export const runResult = z.object({
     largestSharpeRatio: z.number(),
     floorShare: z.number(),
     effectiveStates: z.number(),
-    tailBefore: z.array(z.object({ years: z.number(), loss: z.number() })),
-    tailAfter: z.array(z.object({ years: z.number(), loss: z.number() })),
+    tailBefore: z.array(houseTailPoint),
+    tailAfter: z.array(houseTailPoint),
   }),
   selfCheck: z.object({
     /** Largest distance of simulated from exact, in standard errors. */

@@ -48,7 +48,7 @@ export function comparison(ours: Valuation | RunResult, theirs: ScipyValuation):
       ),
       compared(
         `${layer.key}: expected reinstatement`,
-        borrowed(layer.expectedReinstatement, other.expectedReinstatement, states),
+        layer.expectedReinstatement,
         other.expectedReinstatement,
       ),
       compared(`${layer.key}: E[m·Z]`, borrowed(priced, other.pricedLoss, states), other.pricedLoss),
@@ -65,7 +65,7 @@ export function comparison(ours: Valuation | RunResult, theirs: ScipyValuation):
   const { oneIn100, oneIn250, largestSharpeRatio } = theirs.house;
   return [
     ...layers,
-    compared('programme walk-away', borrowed(ours.programme.walkAwayPremium, total, states), total),
+    compared('programme walk-away', ours.programme.walkAwayPremium, total),
     compared('house, 1 in 100', borrowed(tail(ours, 100), oneIn100, states), oneIn100),
     compared('house, 1 in 250', borrowed(tail(ours, 250), oneIn250, states), oneIn250),
     compared(

@@ -1,57 +1,88 @@
 import { availableParallelism } from 'node:os';
 import { join } from 'node:path';
-import { Worker } from 'node:worker_threads';
-import { EngineInputError, type BlockResult, type Valuation, type ValuationInputs } from '../engine';
-import { buffersOf, type Answer, type Ask } from './messages';
+import { shareMemory, type Found, type Task, type Valuation, type ValuationInputs } from '../engine';
+import { ComputeAborted, Thread } from './thread';
+
+export { ComputeAborted } from './thread';
 
 /** The compiled file of a thread. */
 export const THREAD_FILE = join(__dirname, 'compute-thread.js');
 
-/** Thrown where the signal ended the work. */
-export class ComputeAborted extends Error {
-  constructor() {
-    super('the computation was ended');
-    this.name = 'ComputeAborted';
-  }
+const shared = (bytes: number): SharedArrayBuffer => new SharedArrayBuffer(bytes);
+
+/** How far a run is: whole blocks, and one step more for what follows them. */
+export type OnProgress = (done: number, total: number) => void;
+
+/** Blocks that are known from before, and where new ones are told. */
+export interface BlockStore {
+  readonly known: ReadonlyMap<number, SharedArrayBuffer>;
+  readonly keep: (index: number, memory: SharedArrayBuffer) => void;
 }
+
+const NO_STORE: BlockStore = { known: new Map(), keep: () => undefined };
 
 export interface Computer {
   /**
-   * Values a run on all threads, block by block.
-   * @param onProgress how many blocks are done; the last step is the join
+   * Values a run on all threads, task by task.
+   * @param onProgress how many blocks are done; the last step is all that follows them
    * @param signal ends the work at once: the threads are taken down, new ones come with the next run
    * @throws EngineInputError, ComputeAborted, or an error of ours
    */
-  value(inputs: ValuationInputs, onProgress: (done: number, total: number) => void, signal: AbortSignal): Promise<Valuation>;
+  value(inputs: ValuationInputs, onProgress: OnProgress, signal: AbortSignal, store?: BlockStore): Promise<Valuation>;
   close(): Promise<void>;
 }
 
-class Thread {
-  private readonly worker: Worker;
-  private pending: { resolve: (answer: Answer) => void; reject: (error: Error) => void } | null = null;
+/** Lets every thread take the next task as it is free; answers what they found in the tasks' order. */
+async function share(crew: readonly Thread[], tasks: readonly Task[], told: (found: Found) => void): Promise<Found[]> {
+  const found: Found[] = [];
+  let next = 0;
+  const serve = async (thread: Thread): Promise<void> => {
+    for (let at = next; at < tasks.length; at = next) {
+      next = at + 1;
+      const task = tasks[at];
+      if (task === undefined) return;
+      const answer = await thread.ask({ kind: 'do', task }, 'found');
+      found[at] = answer.found;
+      told(answer.found);
+    }
+  };
+  await Promise.all(crew.map(serve));
+  return found;
+}
 
-  constructor(file: string) {
-    this.worker = new Worker(file);
-    this.worker.on('message', (answer: Answer) => {
-      const waiting = this.pending;
-      this.pending = null;
-      if (answer.kind === 'refused') waiting?.reject(new EngineInputError(answer.words));
-      else if (answer.kind === 'broken') waiting?.reject(new Error(answer.stack));
-      else waiting?.resolve(answer);
-    });
-    this.worker.on('error', (error: Error) => this.pending?.reject(error));
-    this.worker.on('exit', () => this.pending?.reject(new ComputeAborted()));
-  }
-
-  ask(ask: Ask, transfer: readonly ArrayBuffer[] = []): Promise<Answer> {
-    return new Promise((resolve, reject) => {
-      this.pending = { resolve, reject };
-      this.worker.postMessage(ask, transfer);
-    });
-  }
-
-  end(): Promise<number> {
-    return this.worker.terminate();
+async function runOn(crew: readonly Thread[], inputs: ValuationInputs, onProgress: OnProgress, store: BlockStore): Promise<Valuation> {
+  const [leader, ...others] = crew;
+  if (leader === undefined) throw new Error('a pool needs a thread');
+  const [prepared] = await Promise.all(crew.map((thread) => thread.ask({ kind: 'prepare', inputs }, 'prepared')));
+  if (prepared === undefined) throw new Error('a pool needs a thread');
+  const { size } = prepared;
+  const memory = shareMemory(size, shared);
+  await Promise.all(crew.map((thread) => thread.ask({ kind: 'share', memory }, 'done')));
+  let done = 0;
+  const told = (found: Found): void => {
+    if (found.kind !== 'block') return;
+    done += 1;
+    onProgress(done, size.blocks + 1);
+    if (found.memory instanceof SharedArrayBuffer) store.keep(found.index, found.memory);
+  };
+  const blockOf = (task: Task): Found | null => {
+    const known = task.kind === 'block' ? store.known.get(task.index) : undefined;
+    return task.kind === 'block' && known !== undefined ? { kind: 'block', index: task.index, memory: known } : null;
+  };
+  let found: readonly Found[] = [];
+  for (;;) {
+    const [step] = await Promise.all([
+      leader.ask({ kind: 'lead', found }, 'wave', 'valued'),
+      ...others.map((thread) => thread.ask({ kind: 'take', found }, 'done')),
+    ]);
+    if (step.kind === 'valued') {
+      await Promise.all(crew.map((thread) => thread.ask({ kind: 'release' }, 'done')));
+      return step.valuation;
+    }
+    const known = step.tasks.map(blockOf);
+    done += known.filter((block) => block !== null).length;
+    const fresh = await share(crew, step.tasks.filter((_task, t) => known[t] === null), told);
+    found = known.map((block) => block ?? fresh.shift()).filter((one) => one !== undefined);
   }
 }
 
@@ -64,41 +95,16 @@ export function computePool(size = availableParallelism(), file = THREAD_FILE): 
     await Promise.all(ended.map((thread) => thread.end()));
   };
 
-  const work = async (inputs: ValuationInputs, onProgress: (done: number, total: number) => void): Promise<Valuation> => {
-    while (threads.length < size) threads.push(new Thread(file));
-    const crew = threads;
-    const prepared = await Promise.all(crew.map((thread) => thread.ask({ kind: 'prepare', inputs })));
-    const first = prepared[0];
-    const total = first?.kind === 'prepared' ? first.blocks : 0;
-    const blocks: BlockResult[] = [];
-    let next = 0;
-    let done = 0;
-    const serveBlocks = async (thread: Thread): Promise<void> => {
-      while (next < total) {
-        const index = next;
-        next += 1;
-        const answer = await thread.ask({ kind: 'block', index });
-        if (answer.kind !== 'block') throw new Error('a thread answered something else than its block');
-        blocks[index] = answer.block;
-        done += 1;
-        onProgress(done, total + 1);
-      }
-    };
-    await Promise.all(crew.map(serveBlocks));
-    const joined = await crew[0]?.ask({ kind: 'join', blocks }, blocks.flatMap(buffersOf));
-    if (joined?.kind !== 'joined') throw new Error('a thread answered something else than the join');
-    return joined.valuation;
-  };
-
   return {
-    async value(inputs, onProgress, signal) {
+    async value(inputs, onProgress, signal, store = NO_STORE) {
       if (signal.aborted) throw new ComputeAborted();
       const stop = (): void => void takeDown();
       signal.addEventListener('abort', stop, { once: true });
       try {
-        return await work(inputs, onProgress);
+        while (threads.length < size) threads.push(new Thread(file));
+        return await runOn(threads, inputs, onProgress, store);
       } catch (error) {
-        // A thread that failed in the middle may still be at work on its block: none of them serves the next run.
+        // A thread that failed in the middle may still be at work on its task: none of them serves the next run.
         await takeDown();
         throw signal.aborted ? new ComputeAborted() : error;
       } finally {

@@ -1,18 +1,23 @@
-import type { BlockResult } from '../model/blocks';
-import { EngineInputError, type HouseBasis } from '../model/inputs';
+import { BLOCK_STATES, type HouseBasis } from '../model/inputs';
 import type { Prepared } from '../model/prepare';
-import { sumStates } from '../measures/sums';
-import { marginalUtility } from './utility';
+import { EngineInputError } from '../model/refusal';
+import { addState, combined, noMoments, type CommonMoments } from './common-change';
+import { impliedRate } from './implied-rate';
+import { marginalUtility, type Preferences } from './utility';
 
 /** The house in every state. */
 export interface House {
   readonly states: number;
+  readonly preferences: Preferences;
   /** Capital at the end of the state as a share of opening capital. */
   readonly capital: Float64Array;
-  /** The book's catastrophe loss net of reinstatement premiums, house currency. */
-  readonly bookLoss: Float64Array;
-  /** m(s): today's value of one unit paid in the state. */
-  readonly hunger: Float64Array;
+  /** u′(k). Today's value of one unit paid in the state is m = discount × slope. */
+  readonly slope: Float64Array;
+  /** β. */
+  readonly discount: number;
+  /** Σ u′ and Σ u′². */
+  readonly slopeSum: number;
+  readonly slopeSquares: number;
   /** E[m]. */
   readonly sureValue: number;
   readonly risklessRate: number;
@@ -24,6 +29,11 @@ export interface House {
   readonly effectiveStates: number;
   /** The book's premium net of brokerage, taxes and expenses, attritional loss and outward cost, house currency. */
   readonly netPremium: number;
+  /** States with less capital than this stand apart in sums over many states: they are near the floor. */
+  readonly nearBelow: number;
+  readonly near: readonly number[];
+  /** Moments of all other states. */
+  readonly common: CommonMoments;
 }
 
 /** Π: premium of the book at inception, net of what is paid out of it, house currency. */
@@ -40,92 +50,116 @@ export function netBookPremium(prepared: Prepared): number {
   return premium - basis.attritionalAndOutward;
 }
 
-function fillCapital(capital: Float64Array, bookLoss: Float64Array, basis: HouseBasis, netPremium: number, risklessRate: number): void {
-  const start = basis.capital * (1 + (basis.returnOnAssets ?? risklessRate)) + netPremium * (1 + risklessRate);
-  for (let s = 0; s < capital.length; s += 1) capital[s] = (start - (bookLoss[s] ?? 0)) / basis.capital;
+/** Capital share of a state without any catastrophe loss. */
+function lossFreeCapital(basis: HouseBasis, netPremium: number, risklessRate: number): number {
+  return 1 + (basis.returnOnAssets ?? risklessRate) + (netPremium * (1 + risklessRate)) / basis.capital;
 }
 
-const LOWEST_RATE = -0.5;
-const HIGHEST_RATE = 1;
-const MOST_STEPS = 100;
-
-/**
- * Root of `excess` between −50% and 100%, by false position with the Illinois halving (M. Dowell, P. Jarratt, BIT 11,
- * 1971): the rate moves capital too, with a slope of γ, so that plain repetition would run away.
- */
-function impliedRate(excess: (rate: number) => number): number {
-  let [a, b] = [LOWEST_RATE, HIGHEST_RATE];
-  let [atA, atB] = [excess(a), excess(b)];
-  if (!(atA * atB <= 0)) throw new EngineInputError('The stated discount factor implies no sensible riskless rate on this book.');
-  let rate = a;
-  for (let step = 0; step < MOST_STEPS; step += 1) {
-    const next = b - (atB * (b - a)) / (atB - atA);
-    const atNext = excess(next);
-    const moved = Math.abs(next - rate);
-    rate = next;
-    if (atNext === 0 || moved < 1e-14) break;
-    if (atNext * atB < 0) [a, atA] = [b, atB];
-    else atA /= 2;
-    [b, atB] = [next, atNext];
-  }
-  return rate;
+/** What one block's states add to the house. */
+export interface HousePart {
+  readonly slopeSum: number;
+  readonly slopeSquares: number;
+  /** Σ (u′ − u′ of a loss-free state)², about which the scatter is summed without cancellation. */
+  readonly shiftedSquares: number;
+  readonly onFloor: number;
+  readonly near: readonly number[];
+  readonly common: CommonMoments;
 }
 
-/**
- * Capital and hunger of the house in every state: m = β·max(k, φ)^(−γ). Anchored, β makes a sure unit cost
- * 1/(1 + riskless rate); stated, β is given and the riskless rate that it implies is solved for, since the rate also moves
- * capital. Price is the payoff weighted so: J. H. Cochrane, Asset Pricing (2005), chapter 1.
- * @throws EngineInputError where the stated discount implies no riskless rate
- */
-export function houseOf(prepared: Prepared, blocks: readonly BlockResult[]): House {
-  const { basis, grid } = prepared.inputs;
-  const { states } = grid;
-  const bookLoss = new Float64Array(states);
-  let at = 0;
-  for (const block of blocks) {
-    bookLoss.set(block.bookLoss, at);
-    at += block.states;
-  }
+/** The riskless rate: given, or where the discount is stated the one that it implies, for the rate also moves capital. */
+export function risklessRateOf(prepared: Prepared, bookLoss: Float64Array): number {
+  const { basis } = prepared.inputs;
+  if (basis.discounting.mode === 'anchored') return basis.discounting.risklessRate;
+  const { discountFactor } = basis.discounting;
   const netPremium = netBookPremium(prepared);
   const preferences = { riskAversion: basis.riskAversion, floor: basis.floor };
-  const capital = new Float64Array(states);
-  const hunger = new Float64Array(states);
-  const meanMarginal = (risklessRate: number): number => {
-    fillCapital(capital, bookLoss, basis, netPremium, risklessRate);
-    for (let s = 0; s < states; s += 1) hunger[s] = marginalUtility(capital[s] ?? 0, preferences);
-    return sumStates(states, (s) => hunger[s] ?? 0) / states;
-  };
-
-  let risklessRate: number;
-  let discount: number;
-  if (basis.discounting.mode === 'anchored') {
-    risklessRate = basis.discounting.risklessRate;
-    discount = 1 / ((1 + risklessRate) * meanMarginal(risklessRate));
-  } else {
-    discount = basis.discounting.discountFactor;
-    const given = discount;
-    risklessRate = impliedRate((rate) => 1 / (given * meanMarginal(rate)) - 1 - rate);
-    meanMarginal(risklessRate);
-  }
-  for (let s = 0; s < states; s += 1) hunger[s] = (hunger[s] ?? 0) * discount;
-  const sum = sumStates(states, (s) => hunger[s] ?? 0);
-  const sureValue = sum / states;
-  const squares = sumStates(states, (s) => (hunger[s] ?? 0) * (hunger[s] ?? 0));
-  const scatter = sumStates(states, (s) => {
-    const off = (hunger[s] ?? 0) - sureValue;
-    return off * off;
+  return impliedRate((rate) => {
+    const free = lossFreeCapital(basis, netPremium, rate);
+    let total = 0;
+    for (let from = 0; from < bookLoss.length; from += BLOCK_STATES) {
+      let sum = 0;
+      const to = Math.min(from + BLOCK_STATES, bookLoss.length);
+      for (let s = from; s < to; s += 1) sum += marginalUtility(free - (bookLoss[s] ?? 0) / basis.capital, preferences);
+      total += sum;
+    }
+    return 1 / ((discountFactor * total) / bookLoss.length) - 1 - rate;
   });
-  const onFloor = sumStates(states, (s) => ((capital[s] ?? 0) <= basis.floor ? (hunger[s] ?? 0) : 0));
+}
+
+function nearBelowOf(floor: number): number {
+  return Math.max(1.25 * floor, 0.5);
+}
+
+/** Fills capital and u′ of one block's states from the book's loss, and sums what the house needs of them. */
+export function housePart(prepared: Prepared, columns: { bookLoss: Float64Array; capital: Float64Array; slope: Float64Array }, index: number, risklessRate: number): HousePart {
+  const { basis } = prepared.inputs;
+  const { bookLoss, capital, slope } = columns;
+  const preferences = { riskAversion: basis.riskAversion, floor: basis.floor };
+  const free = lossFreeCapital(basis, netBookPremium(prepared), risklessRate);
+  const freeSlope = marginalUtility(free, preferences);
+  const nearBelow = nearBelowOf(basis.floor);
+  const common = noMoments();
+  const near: number[] = [];
+  let [slopeSum, slopeSquares, shiftedSquares, onFloor] = [0, 0, 0, 0];
+  const from = index * BLOCK_STATES;
+  const to = Math.min(from + BLOCK_STATES, bookLoss.length);
+  for (let s = from; s < to; s += 1) {
+    const loss = bookLoss[s] ?? 0;
+    const k = free - loss / basis.capital;
+    const u = loss === 0 ? freeSlope : marginalUtility(k, preferences);
+    capital[s] = k;
+    slope[s] = u;
+    slopeSum += u;
+    slopeSquares += u * u;
+    shiftedSquares += (u - freeSlope) * (u - freeSlope);
+    if (k <= basis.floor) onFloor += u;
+    if (k < nearBelow) near.push(s);
+    else addState(common, k, u);
+  }
+  return { slopeSum, slopeSquares, shiftedSquares, onFloor, near, common };
+}
+
+/**
+ * Joins the blocks' parts, in order, to the house: m = β·max(k, φ)^(−γ). Anchored, β makes a sure unit cost
+ * 1/(1 + riskless rate); stated, β is given. Price is the payoff weighted so: J. H. Cochrane, Asset Pricing (2005), chapter 1.
+ * @throws EngineInputError where every state is at or below the floor
+ */
+export function houseOf(prepared: Prepared, columns: { capital: Float64Array; slope: Float64Array }, parts: readonly HousePart[], risklessRate: number): House {
+  const { basis, grid } = prepared.inputs;
+  const { states } = grid;
+  let [slopeSum, slopeSquares, shiftedSquares, onFloor] = [0, 0, 0, 0];
+  let common = noMoments();
+  for (const part of parts) {
+    slopeSum += part.slopeSum;
+    slopeSquares += part.slopeSquares;
+    shiftedSquares += part.shiftedSquares;
+    onFloor += part.onFloor;
+    common = combined(common, part.common, 1);
+  }
+  if (onFloor === slopeSum && basis.riskAversion > 0) {
+    throw new EngineInputError('In every simulated year the book alone leaves the house at or below its floor: look at its capital, its floor and its book.');
+  }
+  const { discounting } = basis;
+  const discount = discounting.mode === 'anchored' ? states / ((1 + risklessRate) * slopeSum) : discounting.discountFactor;
+  const preferences = { riskAversion: basis.riskAversion, floor: basis.floor };
+  const netPremium = netBookPremium(prepared);
+  const offFree = slopeSum / states - marginalUtility(lossFreeCapital(basis, netPremium, risklessRate), preferences);
+  const scatter = Math.max(shiftedSquares / states - offFree * offFree, 0);
   return {
     states,
-    capital,
-    bookLoss,
-    hunger,
-    sureValue,
+    preferences,
+    ...columns,
+    discount,
+    slopeSum,
+    slopeSquares,
+    sureValue: (discount * slopeSum) / states,
     risklessRate,
-    largestSharpeRatio: Math.sqrt(scatter / states) / sureValue,
-    floorShare: onFloor / sum,
-    effectiveStates: (sum * sum) / squares,
+    largestSharpeRatio: Math.sqrt(scatter) / (slopeSum / states),
+    floorShare: onFloor / slopeSum,
+    effectiveStates: (slopeSum * slopeSum) / slopeSquares,
     netPremium,
+    nearBelow: nearBelowOf(basis.floor),
+    near: parts.flatMap((part) => part.near),
+    common,
   };
 }

@@ -3,7 +3,7 @@ import { normalDensity } from '../math/normal';
 import { hungerOf, priceOf, pricedStates } from './state-prices';
 
 const power = (riskAversion: number) => ({ riskAversion, floor: 1e-9 });
-const SOURCE = 'D. Backus, course notes ECON-UB.233, NYU Stern';
+const SOURCE = 'D. Backus, notes ECON-UB.233, NYU Stern';
 const digits = (value: number, places: number) => expect.closeTo(value, places) as number;
 
 describe('price as E[m·x]', () => {

@@ -1,7 +1,7 @@
 import exp from '@stdlib/math-base-special-exp';
 import expm1 from '@stdlib/math-base-special-expm1';
-import ln from '@stdlib/math-base-special-ln';
 import log1p from '@stdlib/math-base-special-log1p';
+import { ln } from '../math/ln';
 
 /** Power utility u(k) = (k^(1−γ) − 1)/(1−γ), logarithmic at γ = 1, going on as a straight line of slope φ^(−γ) below φ. */
 export interface Preferences {
@@ -16,21 +16,34 @@ export function marginalUtility(k: number, { riskAversion, floor }: Preferences)
   return exp(-riskAversion * ln(k > floor ? k : floor));
 }
 
-function smoothGain(k: number, change: number, riskAversion: number): number {
-  const growth = log1p(change / k);
+/** u(k + change) − u(k) above the floor, from u′(k): k^(1−γ) = k·u′(k). */
+function smoothGain(k: number, slope: number, change: number, riskAversion: number): number {
   const power = 1 - riskAversion;
-  if (power === 0) return growth;
-  return (exp(power * ln(k)) * expm1(power * growth)) / power;
+  const growth = log1p(change / k);
+  return power === 0 ? growth : (k * slope * expm1(power * growth)) / power;
 }
 
 /** u(k + change) − u(k) without cancellation, also where change is tiny or γ is near 1. Any real k and change. */
 export function utilityGain(k: number, change: number, preferences: Preferences): number {
+  return utilityGainFrom(k, marginalUtility(k, preferences), change, preferences);
+}
+
+/** The same where slope = u′(k) is known already. */
+export function utilityGainFrom(k: number, slope: number, change: number, preferences: Preferences): number {
   const { riskAversion, floor } = preferences;
   const end = k + change;
-  if (k >= floor && end >= floor) return smoothGain(k, change, riskAversion);
-  const slope = marginalUtility(floor, preferences);
-  if (k < floor && end < floor) return slope * change;
+  if (k >= floor && end >= floor) return smoothGain(k, slope, change, riskAversion);
+  const floorSlope = marginalUtility(floor, preferences);
+  if (k < floor && end < floor) return floorSlope * change;
   return k >= floor
-    ? smoothGain(k, floor - k, riskAversion) + slope * (end - floor)
-    : slope * (floor - k) + smoothGain(floor, end - floor, riskAversion);
+    ? smoothGain(k, slope, floor - k, riskAversion) + floorSlope * (end - floor)
+    : floorSlope * (floor - k) + smoothGain(floor, floorSlope, end - floor, riskAversion);
+}
+
+/** u′(k + change), where the gain of that change is known: above the floor (k + change)^(1−γ) = k^(1−γ) + (1−γ)·gain. */
+export function slopeAfter(k: number, slope: number, change: number, gain: number, preferences: Preferences): number {
+  const { riskAversion, floor } = preferences;
+  const end = k + change;
+  if (riskAversion === 1 || k < floor || end < floor) return marginalUtility(end, preferences);
+  return (k * slope + (1 - riskAversion) * gain) / end;
 }

@@ -8,12 +8,17 @@ export interface AnnualTerms {
   readonly limit: number;
   readonly annualDeductible: number;
   readonly reinstatements: readonly number[];
+  readonly unlimitedReinstatementsAt?: number;
   readonly annualLimit?: number;
 }
 
-/** Most that a layer pays in a year: its limit once and once again for each reinstatement, or the annual limit if less. */
+/**
+ * Most that a layer pays in a year: its limit once and once again for each reinstatement, or the annual limit if less;
+ * Infinity where reinstatements are unlimited and nothing else bounds them.
+ */
 export function yearlyCover(terms: AnnualTerms): number {
-  return Math.min((terms.reinstatements.length + 1) * terms.limit, terms.annualLimit ?? Infinity);
+  const cover = terms.unlimitedReinstatementsAt === undefined ? (terms.reinstatements.length + 1) * terms.limit : Infinity;
+  return Math.min(cover, terms.annualLimit ?? Infinity);
 }
 
 /** Z = min(max(ΣY − D, 0), cover): the year's payoff from the summed recoveries. */
@@ -26,6 +31,7 @@ export function yearlyPayoff(summedRecoveries: number, terms: AnnualTerms): numb
  * 100% as to time. Cover is consumed in order; tranche k reinstates the k-th limit; the last limit is not reinstated.
  */
 export function reinstatementShare(payoff: number, terms: AnnualTerms): number {
+  if (terms.unlimitedReinstatementsAt !== undefined) return (terms.unlimitedReinstatementsAt * payoff) / terms.limit;
   let share = 0;
   for (let k = 0; k < terms.reinstatements.length; k += 1) {
     const reinstated = Math.min(Math.max(payoff - k * terms.limit, 0), terms.limit);

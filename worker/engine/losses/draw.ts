@@ -1,32 +1,53 @@
+import exp from '@stdlib/math-base-special-exp';
 import { normalQuantile } from '../math/normal';
 import type { PreparedTable } from '../model/prepare';
 import { PURPOSE } from '../random/keys';
 import type { Occurrences } from '../random/occurrences';
 import { philox, uniform52 } from '../random/philox';
-import { lossAt } from './severity';
+import { CERTAIN, LOGNORMAL, betaOfRow, type Laws } from './laws';
+import { LAW_KNOTS, RANGE, logitFromKnots } from './quantile-table';
+import { betaAtScore } from './severity';
+
+/** No score is beyond: the quantile of the least uniform number that the generator makes is −8.21. */
+const LARGEST_SCORE = 8.3;
+
+/** The loss of a row at a normal score, table currency. */
+export function lossOfRow(laws: Laws, table: PreparedTable, row: number, score: number): number {
+  const at = table.firstRow + row;
+  const kind = table.kind[row];
+  if (kind === CERTAIN) return laws.parameters[2 * at] ?? 0;
+  if (kind === LOGNORMAL) return exp((laws.parameters[2 * at] ?? 0) + (laws.parameters[2 * at + 1] ?? 0) * score);
+  const slot = table.slot[row] ?? -1;
+  const exposed = table.exposedValue[row] ?? 0;
+  const knots = slot * LAW_KNOTS;
+  if (slot >= 0 && score <= RANGE && score >= -RANGE && laws.knots[knots] === laws.knots[knots]) {
+    return exposed / (1 + exp(-logitFromKnots(laws.knots, knots, score)));
+  }
+  return exposed * betaAtScore(betaOfRow(laws, at), score);
+}
 
 /**
  * Adds a table's losses to `losses`, one entry an occurrence, contract currency. The score of a loss is
  * √c·z + √(1−c)·v: z the occurrence's, met by every table, and v drawn for this table and this occurrence alone.
- * Losses that cannot reach the lowest attachment are left out.
+ * Losses that cannot exceed the lowest attachment are left out, where the table says so.
  */
-export function addLosses(losses: Float64Array, table: PreparedTable, occurrences: Occurrences, block: number): void {
+export function addLosses(losses: Float64Array, table: PreparedTable, laws: Laws, occurrences: Occurrences, block: number): void {
   const words = new Uint32Array(4);
-  const { rowOfEvent, firstEvent, severities, commonWeight, ownWeight, scoreThreshold, key0, key1, toContractCurrency } = table;
+  const { rowOfEvent, firstEvent, firstRow, kind, commonWeight, ownWeight, key0, key1, toContractCurrency } = table;
   const events = rowOfEvent.length;
   for (let i = 0; i < occurrences.count; i += 1) {
     const event = (occurrences.event[i] ?? 0) - firstEvent;
     if (event < 0 || event >= events) continue;
     const row = rowOfEvent[event] ?? -1;
     if (row < 0) continue;
-    const severity = severities[row];
-    if (severity === undefined) continue;
-    let score = (commonWeight[row] ?? 0) * (occurrences.score[i] ?? 0);
+    const threshold = laws.threshold[firstRow + row] ?? 0;
     const own = ownWeight[row] ?? 0;
-    if (own > 0 && severity.kind !== 'certain') {
+    let score = (commonWeight[row] ?? 0) * (occurrences.score[i] ?? 0);
+    if (score + own * LARGEST_SCORE <= threshold) continue;
+    if (own > 0 && kind[row] !== CERTAIN) {
       philox(words, occurrences.ordinal[i] ?? 0, block, PURPOSE.table, 0, key0[row] ?? 0, key1[row] ?? 0);
       score += own * normalQuantile(uniform52(words[0] ?? 0, words[1] ?? 0));
     }
-    if (score > (scoreThreshold[row] ?? 0)) losses[i] = (losses[i] ?? 0) + lossAt(severity, score) * toContractCurrency;
+    if (score > threshold) losses[i] = (losses[i] ?? 0) + lossOfRow(laws, table, row, score) * toContractCurrency;
   }
 }

@@ -1,7 +1,7 @@
 import betaln from '@stdlib/math-base-special-betaln';
 import exp from '@stdlib/math-base-special-exp';
-import ln from '@stdlib/math-base-special-ln';
 import log1p from '@stdlib/math-base-special-log1p';
+import { ln } from './ln';
 
 const TINY = 1e-300;
 const MOST_TERMS = 10_000;
@@ -113,34 +113,57 @@ export function logitStart(law: BetaLaw): LogitStart {
 const MOST_STEPS = 60;
 
 /**
- * Quantile of a beta law at a normal score, by Newton's method on the logarithm of the smaller tail in logit space. The
+ * Logit of a beta quantile at a normal score, by Newton's method on the logarithm of the smaller tail in logit space. The
  * logit of a beta variable has a log-concave density, so both tails are log-concave in it (Bagnoli and Bergstrom 2005,
  * Economic Theory 26): the steps come in monotonically from a start on the outer side and cannot run away.
  * @param score normal score s; the quantile is at Φ(s)
+ * @param logTail ln Φ(−|s|), the smaller tail
+ * @param guess where to start
+ * @param start from `logitStart` of the same law: where to go back to from a point at which the tail vanishes
+ * @returns the logit, absolute error about 1e-12, and there the density of the logit
+ */
+export function betaLogitAtScore(law: BetaLaw, score: number, logTail: number, guess: number, start: LogitStart): { logit: number; density: number } {
+  const low = score <= 0;
+  const sign = low ? 1 : -1;
+  // Mirrored, the upper tail is the lower one of the law with its shapes exchanged.
+  const mirrored: BetaLaw = low ? law : { a: law.b, b: law.a, logBeta: law.logBeta };
+  // A concave function lies below its asymptote, ln P(B ≤ x) ≤ a·y − ln(a·B(a, b)), whose root is thus left of the quantile.
+  const asymptote = (logTail + ln(mirrored.a) + mirrored.logBeta) / mirrored.a;
+  let y = sign * guess;
+  if (!(y > asymptote)) y = asymptote;
+  let density = 0;
+  // Between these the quantile is known to lie; a step that leaves them, which only laws far from normal make, is halved instead.
+  let [below, above] = [-Infinity, Infinity];
+  const halfWay = (): number => 0.5 * ((below > -Infinity ? below : y) + (above < Infinity ? above : sign * start.mean));
+  for (let step = 0; step < MOST_STEPS; step += 1) {
+    const at = betaAtLogit(mirrored, y);
+    const logLower = at.lower > 0 ? ln(at.lower) : -Infinity;
+    if (logLower < logTail) below = y;
+    else above = y;
+    const move = ((logLower - logTail) * at.lower) / at.slope;
+    if (!(at.lower > 0 && at.slope > 0 && y - move >= below - 1e-7 && y - move <= above + 1e-7)) {
+      y = halfWay();
+      continue;
+    }
+    y -= move;
+    density = at.slope;
+    if (move < 1e-7 && move > -1e-7) {
+      // To first order the density moves with its logarithm's slope, a − (a + b)·x.
+      density *= 1 - move * (mirrored.a - (mirrored.a + mirrored.b) / (1 + exp(-y)));
+      break;
+    }
+  }
+  return { logit: sign * y, density };
+}
+
+/**
+ * Quantile of a beta law at a normal score.
  * @param tail Φ(−|s|), the smaller tail
  * @param start from `logitStart` of the same law
  * @returns the quantile, 0 to 1; relative error about 1e-12
  */
 export function betaQuantile(law: BetaLaw, score: number, tail: number, start: LogitStart): number {
-  const low = score <= 0;
-  if (tail <= 0) return low ? 0 : 1;
-  // Mirrored, the upper tail is the lower one of the law with its shapes exchanged.
-  const mirrored: BetaLaw = low ? law : { a: law.b, b: law.a, logBeta: law.logBeta };
-  const logTail = ln(tail);
-  // A concave function lies below its asymptote, ln P(B ≤ x) ≤ a·y − ln(a·B(a, b)), whose root is thus left of the quantile.
-  const asymptote = (logTail + ln(mirrored.a) + mirrored.logBeta) / mirrored.a;
-  let y = low ? start.mean + start.sd * score : -(start.mean + start.sd * score);
-  if (y < asymptote) y = asymptote;
-  for (let step = 0; step < MOST_STEPS; step += 1) {
-    const at = betaAtLogit(mirrored, y);
-    if (!(at.lower > 0) || !(at.slope > 0)) {
-      y = 0.5 * (y + (low ? start.mean : -start.mean));
-      continue;
-    }
-    const move = ((ln(at.lower) - logTail) * at.lower) / at.slope;
-    y -= move;
-    if (move < 1e-12 && move > -1e-12) break;
-    if (move < 1e-7 && move > -1e-7) break;
-  }
-  return low ? 1 / (1 + exp(-y)) : 1 / (1 + exp(y));
+  if (tail <= 0) return score <= 0 ? 0 : 1;
+  const { logit } = betaLogitAtScore(law, score, ln(tail), start.mean + start.sd * score, start);
+  return 1 / (1 + exp(-logit));
 }

@@ -1,6 +1,6 @@
 import erfc from '@stdlib/math-base-special-erfc';
-import ln from '@stdlib/math-base-special-ln';
 import exp from '@stdlib/math-base-special-exp';
+import { ln } from './ln';
 
 const SQRT_HALF = Math.sqrt(0.5);
 const DENSITY_AT_0 = 0.3989422804014327;

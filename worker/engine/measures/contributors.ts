@@ -1,6 +1,3 @@
-import type { House } from '../house/house';
-import type { BlockResult } from '../model/blocks';
-import { BLOCK_STATES } from '../model/inputs';
 import type { Prepared } from '../model/prepare';
 
 export interface Contributors {
@@ -11,60 +8,37 @@ export interface Contributors {
 
 const SHOWN_EVENTS = 10;
 
-/** Each event's part of E[m·Z]: a state's payoff is shared among its occurrences in proportion to their recoveries. */
-function priceByEvent(prepared: Prepared, blocks: readonly BlockResult[], house: House, payoff: Float64Array, layer: number): Float64Array {
-  const last = prepared.catalogues[prepared.catalogues.length - 1];
-  const parts = new Float64Array((last?.firstEvent ?? 0) + (last?.catalogue.eventNames.length ?? 0));
-  for (const block of blocks) {
-    const hits = block.hits[layer];
-    if (hits === undefined) continue;
-    const offset = block.index * BLOCK_STATES;
-    const count = hits.state.length;
-    for (let from = 0; from < count; ) {
-      const state = hits.state[from] ?? 0;
-      let to = from;
-      let sum = 0;
-      while (to < count && hits.state[to] === state) {
-        sum += hits.recovery[to] ?? 0;
-        to += 1;
-      }
-      const value = ((payoff[offset + state] ?? 0) * (house.hunger[offset + state] ?? 0)) / sum;
-      for (let i = from; i < to; i += 1) {
-        const event = hits.event[i] ?? 0;
-        parts[event] = (parts[event] ?? 0) + value * (hits.recovery[i] ?? 0);
-      }
-      from = to;
-    }
-  }
-  return parts;
-}
-
 function shares(sums: ReadonlyMap<string, number>, total: number): { name: string; priceShare: number }[] {
   return [...sums]
-    .filter(([, sum]) => sum > 0)
     .map(([name, sum]) => ({ name, priceShare: sum / total }))
     .sort((a, b) => b.priceShare - a.priceShare || (a.name < b.name ? -1 : 1));
 }
 
-/** The events, perils and regions that make a layer's price. */
-export function contributors(prepared: Prepared, blocks: readonly BlockResult[], house: House, payoff: Float64Array, layer: number): Contributors {
-  const parts = priceByEvent(prepared, blocks, house, payoff, layer);
+/**
+ * The events, perils and regions that make a layer's price.
+ * @param parts of E[m·Z] by event, counted through all catalogues
+ */
+export function contributors(prepared: Pick<Prepared, 'catalogues'>, parts: Float64Array): Contributors {
   let total = 0;
   for (const part of parts) total += part;
   const perils = new Map<string, number>();
   const regions = new Map<string, number>();
-  const events: { event: string; peril: string; region: string; priceShare: number }[] = [];
+  const top: { event: string; peril: string; region: string; priceShare: number }[] = [];
+  const before = (a: (typeof top)[number], b: (typeof top)[number]): number => b.priceShare - a.priceShare || (a.event < b.event ? -1 : 1);
   for (const { catalogue, firstEvent } of prepared.catalogues) {
-    catalogue.eventNames.forEach((event, i) => {
+    for (let i = 0; i < catalogue.eventNames.length; i += 1) {
       const part = parts[firstEvent + i] ?? 0;
-      if (part === 0) return;
+      if (part === 0) continue;
       const peril = catalogue.perils[catalogue.perilIndex[i] ?? 0] ?? '';
       const region = catalogue.regions[catalogue.regionIndex[i] ?? 0] ?? '';
       perils.set(peril, (perils.get(peril) ?? 0) + part);
       regions.set(region, (regions.get(region) ?? 0) + part);
-      events.push({ event, peril, region, priceShare: part / total });
-    });
+      const priceShare = part / total;
+      if (top.length === SHOWN_EVENTS && priceShare < (top[SHOWN_EVENTS - 1]?.priceShare ?? 0)) continue;
+      top.push({ event: catalogue.eventNames[i] ?? '', peril, region, priceShare });
+      top.sort(before);
+      top.length = Math.min(top.length, SHOWN_EVENTS);
+    }
   }
-  events.sort((a, b) => b.priceShare - a.priceShare || (a.event < b.event ? -1 : 1));
-  return { topEvents: events.slice(0, SHOWN_EVENTS), perils: shares(perils, total), regions: shares(regions, total) };
+  return { topEvents: top, perils: shares(perils, total), regions: shares(regions, total) };
 }

@@ -3,10 +3,10 @@ import { yearlyCover } from '../layers/payoff';
 import type { HouseBasis } from '../model/inputs';
 import type { Deal } from '../premiums/deal';
 import type { MarginalPremium } from '../premiums/marginal';
-import { moments, sumStates, type Estimate } from './sums';
+import { estimateOf, sumByBlock, type Estimate } from './sums';
 
 /** Fewer effective states than this and the price is called thin. */
-const THIN_STATES = 2500;
+export const THIN_STATES = 2500;
 
 export interface PremiumSplit {
   readonly risklessLoss: number;
@@ -48,35 +48,58 @@ export interface PayoffMeasures {
   readonly standardDeviation: number;
   readonly attachmentProbability: Estimate;
   readonly exhaustionProbability: Estimate;
-  readonly pricedAttachmentProbability: number;
-  readonly expectedReinstatement: number;
+  readonly pricedAttachmentProbability: Estimate;
+  readonly expectedReinstatement: Estimate;
   readonly effectiveStates: number;
   readonly thin: boolean;
 }
 
+/** A probability from how many states of the grid it happens in. */
+export function probabilityOf(happens: number, states: number): Estimate {
+  const value = happens / states;
+  return { value, standardError: Math.sqrt((value * (1 - value)) / states) };
+}
+
+/**
+ * Price-weighted probability E[m·1]/E[m] of states that happen with probability p, with the standard error of the ratio:
+ * a state moves it by m·(1 − value)/E[m] where it happens and −m·value/E[m] elsewhere.
+ */
+export function pricedProbability(house: House, slopes: number, squares: number): Estimate {
+  const value = slopes / house.slopeSum;
+  const scatter = squares * (1 - 2 * value) + value * value * house.slopeSquares;
+  return { value, standardError: Math.sqrt(Math.max(scatter, 0)) / house.slopeSum };
+}
+
 /** What a layer's payoff looks like over the states, and how many of them carry its price: 1/Σw², w their shares of E[m·Z]. */
 export function payoffMeasures(deal: Deal, house: House): PayoffMeasures {
-  const { payoff, reinstatement, layer } = deal;
-  const { states, hunger } = house;
-  const loss = moments(states, (s) => payoff[s] ?? 0);
+  const { layer, paying } = deal;
+  const { blockStart, state, payoff, reinstatement } = paying;
+  const { states, slope } = house;
   const cover = yearlyCover(layer);
-  const probability = (happens: (z: number) => boolean): Estimate => {
-    const value = sumStates(states, (s) => (happens(payoff[s] ?? 0) ? 1 : 0)) / states;
-    return { value, standardError: Math.sqrt((value * (1 - value)) / states) };
+  const n = state.length;
+  const overPaying = (term: (i: number) => number): number => sumByBlock(blockStart, term);
+  const estimate = (column: Float64Array) => {
+    const sum = overPaying((i) => column[i] ?? 0);
+    const mean = sum / states;
+    const scatter = overPaying((i) => ((column[i] ?? 0) - mean) * ((column[i] ?? 0) - mean)) + (states - n) * mean * mean;
+    return estimateOf(states, sum, scatter);
   };
-  const total = sumStates(states, (s) => (hunger[s] ?? 0) * (payoff[s] ?? 0));
-  const squares = sumStates(states, (s) => {
-    const weighted = (hunger[s] ?? 0) * (payoff[s] ?? 0);
+  const loss = estimate(payoff);
+  const slopeOf = (i: number): number => slope[state[i] ?? 0] ?? 0;
+  const total = overPaying((i) => slopeOf(i) * (payoff[i] ?? 0));
+  const squares = overPaying((i) => {
+    const weighted = slopeOf(i) * (payoff[i] ?? 0);
     return weighted * weighted;
   });
   const effectiveStates = squares === 0 ? 0 : (total * total) / squares;
+  const { value, standardError } = estimate(reinstatement);
   return {
     expectedLoss: { value: loss.value, standardError: loss.standardError },
     standardDeviation: loss.deviation,
-    attachmentProbability: probability((z) => z > 0),
-    exhaustionProbability: probability((z) => z >= cover),
-    pricedAttachmentProbability: sumStates(states, (s) => ((payoff[s] ?? 0) > 0 ? (hunger[s] ?? 0) : 0)) / states / house.sureValue,
-    expectedReinstatement: sumStates(states, (s) => reinstatement[s] ?? 0) / states,
+    attachmentProbability: probabilityOf(n, states),
+    exhaustionProbability: probabilityOf(overPaying((i) => ((payoff[i] ?? 0) >= cover ? 1 : 0)), states),
+    pricedAttachmentProbability: pricedProbability(house, overPaying(slopeOf), overPaying((i) => slopeOf(i) * slopeOf(i))),
+    expectedReinstatement: { value, standardError },
     effectiveStates,
     thin: effectiveStates < THIN_STATES,
   };

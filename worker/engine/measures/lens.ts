@@ -1,9 +1,5 @@
-import exp from '@stdlib/math-base-special-exp';
-import ln from '@stdlib/math-base-special-ln';
-import type { House } from '../house/house';
-
-const BINS_A_DECADE = 12;
-const FIRST_SHARE = 1e-4;
+import type { LeanBins } from './lean-bins';
+import { lensEdges } from './lean-bins';
 
 export interface LensBin {
   readonly shareFrom: number;
@@ -19,53 +15,26 @@ export interface LensBin {
   readonly plain: readonly number[];
 }
 
-/**
- * The lean lens: states in their lean order, binned evenly in the logarithm of the share of states at least as lean. The
- * first bin holds all that are leaner still.
- */
-export function leanLens(order: Uint32Array, house: House, layers: readonly { payoff: Float64Array; limit: number }[]): LensBin[] {
-  const { states, capital, hunger, sureValue } = house;
-  const bins: LensBin[] = [];
-  const step = exp(ln(10) / BINS_A_DECADE);
-  const width = ln(step);
-  let from = 0;
-  for (let share = FIRST_SHARE * step; from < states; share *= step) {
-    const shareTo = share > 1 / Math.sqrt(step) ? 1 : share;
-    const to = Math.min(states, Math.floor(shareTo * states));
-    if (to <= from) continue;
-    let sumHunger = 0;
-    let sumCapital = 0;
-    const plain = layers.map(() => 0);
-    const weighted = layers.map(() => 0);
-    for (let i = from; i < to; i += 1) {
-      const s = order[i] ?? 0;
-      const m = (hunger[s] ?? 0) / sureValue;
-      sumHunger += m;
-      sumCapital += capital[s] ?? 0;
-      for (let l = 0; l < layers.length; l += 1) {
-        const z = layers[l]?.payoff[s] ?? 0;
-        if (z === 0) continue;
-        plain[l] = (plain[l] ?? 0) + z;
-        weighted[l] = (weighted[l] ?? 0) + m * z;
-      }
-    }
-    const previous = bins[bins.length - 1]?.shareTo;
-    const shareFrom = previous ?? shareTo / step;
-    const thick = previous === undefined ? width : ln(shareTo / shareFrom);
-    const n = to - from;
-    const over = (sums: number[], by: number): number[] => sums.map((sum, l) => sum / (layers[l]?.limit ?? 1) / by);
-    bins.push({
+/** What a layer pays in the states of each part of the lean order: Σ Z and Σ m·Z. */
+export interface PartSums {
+  readonly payoff: Float64Array;
+  readonly priced: Float64Array;
+}
+
+/** The lean lens: the house in each bin of states, and what each layer pays there. */
+export function leanLens(states: number, sureValue: number, bins: LeanBins, layers: readonly { readonly sums: PartSums; readonly limit: number }[]): LensBin[] {
+  return lensEdges(states).map(({ shareFrom, shareTo, width, from, to }, b) => {
+    const over = (sum: (layer: PartSums) => number, by: number): number[] => layers.map(({ sums, limit }) => sum(sums) / limit / by);
+    return {
       shareFrom,
       shareTo,
-      hunger: sumHunger / n,
-      meanCapital: sumCapital / n,
-      payoff: over(plain, n),
-      product: over(weighted, states * thick),
-      plain: over(plain, states * thick),
-    });
-    from = to;
-  }
-  return bins;
+      hunger: bins.lens[b]?.hunger ?? 0,
+      meanCapital: bins.lens[b]?.meanCapital ?? 0,
+      payoff: over(({ payoff }) => payoff[b] ?? 0, to - from),
+      product: over(({ priced }) => (priced[b] ?? 0) / sureValue, states * width),
+      plain: over(({ payoff }) => payoff[b] ?? 0, states * width),
+    };
+  });
 }
 
 export interface Decile {
@@ -77,25 +46,12 @@ export interface Decile {
 }
 
 /** Ten groups of states from the leanest to the most plentiful, with what each has of a layer's loss and price. */
-export function deciles(order: Uint32Array, house: House, payoff: Float64Array): Decile[] {
-  const { states, capital, hunger } = house;
-  const groups = Array.from({ length: 10 }, (_unused, d) => {
-    const from = Math.floor((d * states) / 10);
-    const to = Math.floor(((d + 1) * states) / 10);
-    let [sumCapital, loss, price] = [0, 0, 0];
-    for (let i = from; i < to; i += 1) {
-      const s = order[i] ?? 0;
-      sumCapital += capital[s] ?? 0;
-      loss += payoff[s] ?? 0;
-      price += (payoff[s] ?? 0) * (hunger[s] ?? 0);
-    }
-    return { meanCapital: sumCapital / (to - from), loss, price };
-  });
-  const losses = groups.reduce((sum, group) => sum + group.loss, 0);
-  const prices = groups.reduce((sum, group) => sum + group.price, 0);
-  return groups.map(({ meanCapital, loss, price }) => ({
+export function deciles(bins: LeanBins, sums: PartSums): Decile[] {
+  const total = (of: Float64Array): number => of.reduce((sum, x) => sum + x, 0);
+  const [losses, prices] = [total(sums.payoff), total(sums.priced)];
+  return bins.deciles.map(({ meanCapital }, d) => ({
     meanCapital,
-    lossShare: losses === 0 ? 0 : loss / losses,
-    priceShare: prices === 0 ? 0 : price / prices,
+    lossShare: losses === 0 ? 0 : (sums.payoff[d] ?? 0) / losses,
+    priceShare: prices === 0 ? 0 : (sums.priced[d] ?? 0) / prices,
   }));
 }

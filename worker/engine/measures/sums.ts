@@ -1,33 +1,23 @@
-import { BLOCK_STATES } from '../model/inputs';
-
-/**
- * Σ term(s) for s = 0..states−1, summed within each block of 16,384 and the blocks' sums in their order, so that it has
- * the same bytes as sums that were made block by block elsewhere.
- */
-export function sumStates(states: number, term: (state: number) => number): number {
-  let total = 0;
-  for (let from = 0; from < states; from += BLOCK_STATES) {
-    const to = Math.min(from + BLOCK_STATES, states);
-    let sum = 0;
-    for (let s = from; s < to; s += 1) sum += term(s);
-    total += sum;
-  }
-  return total;
-}
-
 export interface Estimate {
   readonly value: number;
   /** Of the Monte Carlo figure, same unit. */
   readonly standardError: number;
 }
 
-/** Mean of a figure over equally likely states, its standard deviation over states and the standard error of the mean. */
-export function moments(states: number, figure: (state: number) => number): Estimate & { readonly deviation: number } {
-  const mean = sumStates(states, figure) / states;
-  const squares = sumStates(states, (s) => {
-    const off = figure(s) - mean;
-    return off * off;
-  });
-  const deviation = Math.sqrt(squares / (states - 1));
-  return { value: mean, deviation, standardError: deviation / Math.sqrt(states) };
+/** Σ term(i) over places 0..n − 1 of blocks that start at `blockStart`, summed within each block and the blocks' sums in order. */
+export function sumByBlock(blockStart: Uint32Array, term: (place: number) => number): number {
+  let total = 0;
+  for (let b = 0; b + 1 < blockStart.length; b += 1) {
+    const to = blockStart[b + 1] ?? 0;
+    let sum = 0;
+    for (let i = blockStart[b] ?? 0; i < to; i += 1) sum += term(i);
+    total += sum;
+  }
+  return total;
+}
+
+/** Mean and deviation of a figure over states, from its sum and the sum of its squared distances from the mean. */
+export function estimateOf(states: number, sum: number, scatter: number): Estimate & { readonly deviation: number } {
+  const deviation = Math.sqrt(Math.max(scatter, 0) / (states - 1));
+  return { value: sum / states, deviation, standardError: deviation / Math.sqrt(states) };
 }

@@ -1,3 +1,8 @@
+import type { LayerTerms } from './layer';
+
+export type { InuringCover, LayerForm, LayerTerms } from './layer';
+export { EngineInputError } from './refusal';
+
 /** States in a block: the unit of work and of joining, fixed for ever because partial sums depend on it. */
 export const BLOCK_STATES = 16_384;
 
@@ -8,6 +13,8 @@ export interface Catalogue {
   readonly eventNames: readonly string[];
   /** Poisson rate of each event, a year, above 0. */
   readonly ratePerYear: Float64Array;
+  /** Factor on each event's rate, above 0, kept apart from the catalogue: a group's shape stays that of the catalogue's own rates. */
+  readonly rateFactor?: Float64Array;
   readonly perils: readonly string[];
   /** Index into `perils` of each event. */
   readonly perilIndex: Uint16Array;
@@ -43,22 +50,6 @@ export interface LossTable {
   readonly exposedValue: Float64Array;
   /** Units of the contract's currency for one unit of the table's. */
   readonly toContractCurrency: number;
-}
-
-/** Terms of an excess-of-loss layer for 100%, contract currency. */
-export interface LayerTerms {
-  readonly key: string;
-  readonly limit: number;
-  readonly attachment: number;
-  readonly annualDeductible: number;
-  /** Price of each reinstatement in order, as a share of the layer premium, pro rata as to amount. */
-  readonly reinstatements: readonly number[];
-  /** Most that is paid in a year, for 100%, where less than limit × (reinstatements + 1). */
-  readonly annualLimit?: number;
-  /** Share of 100% that the house writes. */
-  readonly line: number;
-  /** Share of the layer premium. */
-  readonly brokerage: number;
 }
 
 export interface Programme {
@@ -109,12 +100,4 @@ export interface ValuationInputs {
   readonly programme: Programme;
   readonly book: readonly BookContract[];
   readonly basis: HouseBasis;
-}
-
-/** The inputs cannot be priced; the message says what is wrong and is fit for a person to read. */
-export class EngineInputError extends Error {
-  constructor(message: string) {
-    super(message);
-    this.name = 'EngineInputError';
-  }
 }

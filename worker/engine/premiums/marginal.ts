@@ -1,5 +1,5 @@
 import type { House } from '../house/house';
-import { moments, sumStates, type Estimate } from '../measures/sums';
+import { sumByBlock, type Estimate } from '../measures/sums';
 import type { Deal } from './deal';
 
 /** The marginal premium taken apart, for 100%, contract currency. The parts from riskless loss to reinstatements add up to it. */
@@ -21,29 +21,29 @@ export interface MarginalPremium {
   readonly reinstatementValue: number;
 }
 
+/** What the marginal premium needs of the house. */
+export type HungryStates = Pick<House, 'states' | 'slope' | 'discount' | 'sureValue' | 'slopeSquares' | 'slopeSum'>;
+
 /**
  * Premium of a small line: P = (E[m·Z]·(1 + a) + F/w) / ((1 − q) + (1 − q_R)·E[m·ρ]). The standard error holds E[m] at the
  * riskless price of a sure unit, as anchoring does, by the influence of each state on the ratio.
  */
-export function marginalPremium(deal: Deal, house: House): MarginalPremium {
-  const { payoff, reinstatement, layer } = deal;
-  const { hunger, states, sureValue } = house;
-  const payoffValue = sumStates(states, (s) => (hunger[s] ?? 0) * (payoff[s] ?? 0)) / states;
-  const reinstatementShareValue = sumStates(states, (s) => (hunger[s] ?? 0) * (reinstatement[s] ?? 0)) / states;
-  const meanPayoff = sumStates(states, (s) => payoff[s] ?? 0) / states;
+export function marginalPremium(deal: Deal, house: HungryStates): MarginalPremium {
+  const { layer, paying } = deal;
+  const { blockStart, state, payoff, reinstatement } = paying;
+  const { slope, discount, states, sureValue } = house;
+  const hunger = (i: number): number => discount * (slope[state[i] ?? 0] ?? 0);
+  const payoffValue = sumByBlock(blockStart, (i) => hunger(i) * (payoff[i] ?? 0)) / states;
+  const reinstatementShareValue = sumByBlock(blockStart, (i) => hunger(i) * (reinstatement[i] ?? 0)) / states;
+  const meanPayoff = sumByBlock(blockStart, (i) => payoff[i] ?? 0) / states;
+  const cost = 1 + deal.lossAdjustment;
   const fixed = deal.fixedExpense / layer.line;
-  const keptReinstatement = 1 - deal.reinstatementDeductions;
-  const denominator = 1 - deal.deductions + keptReinstatement * reinstatementShareValue;
-  const value = (payoffValue * (1 + deal.lossAdjustment) + fixed) / denominator;
-  const slope = (payoffValue * (1 + deal.lossAdjustment) - value * keptReinstatement * reinstatementShareValue) / sureValue;
-  const influence = moments(states, (s) => {
-    const m = hunger[s] ?? 0;
-    const net = (payoff[s] ?? 0) * (1 + deal.lossAdjustment) - value * keptReinstatement * (reinstatement[s] ?? 0);
-    return (m * net - slope * m) / denominator;
-  });
+  const kept = 1 - deal.reinstatementDeductions;
+  const denominator = 1 - deal.deductions + kept * reinstatementShareValue;
+  const value = (payoffValue * cost + fixed) / denominator;
   const risklessLoss = sureValue * meanPayoff;
   return {
-    premium: { value, standardError: influence.standardError },
+    premium: { value, standardError: errorOf(deal, house, value, (payoffValue * cost - value * kept * reinstatementShareValue) / sureValue, denominator) },
     payoffValue,
     reinstatementShareValue,
     risklessLoss,
@@ -51,6 +51,21 @@ export function marginalPremium(deal: Deal, house: House): MarginalPremium {
     lossAdjustment: payoffValue * deal.lossAdjustment,
     fixedExpense: fixed,
     brokerageAndExpense: value * deal.deductions,
-    reinstatementValue: -keptReinstatement * value * reinstatementShareValue,
+    reinstatementValue: -kept * value * reinstatementShareValue,
   };
+}
+
+/** A state moves the ratio by m·(net − slope)/denominator; where the layer does not pay, net is 0. */
+function errorOf(deal: Deal, house: HungryStates, premium: number, slope: number, denominator: number): number {
+  const { blockStart, state, payoff, reinstatement } = deal.paying;
+  const { discount, states } = house;
+  const cost = 1 + deal.lossAdjustment;
+  const kept = 1 - deal.reinstatementDeductions;
+  const net = (i: number): number => (payoff[i] ?? 0) * cost - premium * kept * (reinstatement[i] ?? 0);
+  const hunger = (i: number): number => discount * (house.slope[state[i] ?? 0] ?? 0);
+  const all = slope * slope * discount * discount * house.slopeSquares;
+  const squares = all + sumByBlock(blockStart, (i) => hunger(i) * hunger(i) * net(i) * (net(i) - 2 * slope));
+  const sum = sumByBlock(blockStart, (i) => hunger(i) * net(i)) - slope * discount * house.slopeSum;
+  const variance = Math.max(squares - (sum * sum) / states, 0) / (states - 1) / (denominator * denominator);
+  return Math.sqrt(variance / states);
 }

@@ -1,106 +1,131 @@
 import type { House } from '../house/house';
-import { marginalUtility, utilityGain, type Preferences } from '../house/utility';
-import { sumStates } from '../measures/sums';
-import { BLOCK_STATES } from '../model/inputs';
-import type { Deal } from './deal';
-import { capitalChange } from './walk-away';
-
-/** Gauss–Legendre nodes and weights of eight points on 0..1 (M. Abramowitz, I. A. Stegun, table 25.4). */
-const NODES = [
-  [0.019855071751231884, 0.05061426814518813],
-  [0.10166676129318663, 0.11119051722668724],
-  [0.2372337950418355, 0.15685332293894363],
-  [0.4082826787521751, 0.18134189168918100],
-  [0.5917173212478249, 0.18134189168918100],
-  [0.7627662049581645, 0.15685332293894363],
-  [0.8983332387068134, 0.11119051722668724],
-  [0.9801449282487681, 0.05061426814518813],
-] as const;
+import { IdleStates } from '../house/idle-states';
+import { slopeAfter, utilityGainFrom, type Preferences } from '../house/utility';
+import { sumByBlock, type Estimate } from '../measures/sums';
+import { capitalEffect, type CapitalEffect, type Deal } from './deal';
 
 export interface ProgrammeWalkAway {
   /** Premium of each layer for 100%, contract currency. */
   readonly layers: readonly number[];
   /** The house's share, Σ line × premium, contract currency. */
-  readonly total: number;
+  readonly total: Estimate;
 }
 
-function totalChange(deals: readonly Deal[], house: House, premiums: readonly number[]): Float64Array {
-  const change = new Float64Array(house.states);
-  deals.forEach((deal, l) => {
-    const premium = premiums[l] ?? 0;
-    for (let s = 0; s < change.length; s += 1) change[s] = (change[s] ?? 0) + capitalChange(deal, house, s, premium);
-  });
-  return change;
+/** The states in which any of the deals pays, and each deal's places among them. */
+interface PayingStates {
+  readonly state: Uint32Array;
+  readonly places: readonly Uint32Array[];
 }
 
-/** ∫₀¹ E[m_t·f] dt for f = 1, and for Z and ρ of each layer; m_t = u′(k + t·change). */
-function pathValues(deals: readonly Deal[], house: House, change: Float64Array, preferences: Preferences) {
-  const { states, capital } = house;
-  const weight = new Float64Array(states);
+function payingStates(deals: readonly Deal[], states: number): PayingStates {
+  const placeOf = new Uint32Array(states);
+  for (const { paying } of deals) for (const s of paying.state) placeOf[s] = 1;
+  let count = 0;
+  for (let s = 0; s < states; s += 1) count += placeOf[s] ?? 0;
+  const state = new Uint32Array(count);
+  let at = 0;
   for (let s = 0; s < states; s += 1) {
-    const k = capital[s] ?? 0;
-    const c = change[s] ?? 0;
-    let sum = 0;
-    for (const [t, w] of NODES) sum += w * marginalUtility(k + t * c, preferences);
-    weight[s] = sum;
+    if (placeOf[s] === 0) continue;
+    state[at] = s;
+    placeOf[s] = at;
+    at += 1;
   }
-  const sure = sumStates(states, (s) => weight[s] ?? 0);
-  return {
-    sure,
-    payoffs: deals.map((deal) => sumStates(states, (s) => (weight[s] ?? 0) * (deal.payoff[s] ?? 0))),
-    reinstatements: deals.map((deal) => sumStates(states, (s) => (weight[s] ?? 0) * (deal.reinstatement[s] ?? 0))),
-  };
+  return { state, places: deals.map(({ paying }) => paying.state.map((s) => placeOf[s] ?? 0)) };
 }
 
-function gainOf(change: Float64Array, house: House, preferences: Preferences): number {
-  let total = 0;
-  for (let from = 0; from < house.states; from += BLOCK_STATES) {
-    const to = Math.min(from + BLOCK_STATES, house.states);
-    let sum = 0;
-    for (let s = from; s < to; s += 1) sum += utilityGain(house.capital[s] ?? 0, change[s] ?? 0, preferences);
-    total += sum;
+const TINY_CHANGE = 1e-7;
+
+/**
+ * ∫₀¹ u′(k + t·change) dt = (u(k + change) − u(k))/change: the mean marginal utility along the programme scaled from 0 to
+ * 1. For changes so small that the quotient would lose digits, by its second-order expansion.
+ */
+function meanSlope(k: number, slope: number, change: number, preferences: Preferences): number {
+  if (change < TINY_CHANGE && change > -TINY_CHANGE && k - TINY_CHANGE > preferences.floor) {
+    return slope * (1 - (0.5 * preferences.riskAversion * change) / k);
   }
-  return total / house.states;
+  return change === 0 ? slope : utilityGainFrom(k, slope, change, preferences) / change;
 }
 
-const MOST_ROUNDS = 30;
+/** Capital change of all deals together in each paying state. */
+function changes(into: Float64Array, deals: readonly Deal[], effects: readonly CapitalEffect[], paying: PayingStates, premiums: readonly number[]): number {
+  const common = effects.reduce((sum, effect, l) => sum + effect.ofPremium * (premiums[l] ?? 0) + effect.fixed, 0);
+  into.fill(common);
+  deals.forEach((deal, l) => {
+    const effect = effects[l];
+    const places = paying.places[l];
+    if (effect === undefined || places === undefined) return;
+    const { payoff, reinstatement } = deal.paying;
+    const back = effect.ofReinstatement * (premiums[l] ?? 0);
+    for (let i = 0; i < places.length; i += 1) {
+      const at = places[i] ?? 0;
+      into[at] = (into[at] ?? 0) + (effect.ofPayoff * (payoff[i] ?? 0) + back * (reinstatement[i] ?? 0));
+    }
+  });
+  return common;
+}
+
+const MOST_ROUNDS = 60;
 
 /**
  * Walk-away of all layers written together. Each layer's premium is the one at which its own net payoff is worth nothing
  * along the programme scaled from 0 to 1, ∫₀¹ E[m_t · net payoff] dt = 0 with m_t from the capital when t of the programme
  * is written (the allocation of R. J. Aumann and L. S. Shapley, Values of Non-Atomic Games, 1974). Since the integral of
- * the sum is E u(k + change) − E u(k), the parts add up to a programme on which the house neither gains nor loses; what
- * the quadrature leaves of it is taken off by one common factor.
+ * the sum is E u(k + change) − E u(k), the parts add up to a programme on which the house neither gains nor loses.
  */
-export function programmeWalkAway(deals: readonly Deal[], house: House, preferences: Preferences, start: readonly number[]): ProgrammeWalkAway {
+export function programmeWalkAway(deals: readonly Deal[], house: House, start: readonly number[]): ProgrammeWalkAway {
+  const { capital, slope, preferences, sureValue } = house;
+  const paying = payingStates(deals, house.states);
+  const idle = new IdleStates(house, paying.state);
+  const effects = deals.map((deal) => capitalEffect(deal, sureValue));
+  const change = new Float64Array(paying.state.length);
+  const weight = new Float64Array(paying.state.length);
+  const everyState = Uint32Array.of(0, weight.length);
   let premiums = [...start];
   for (let round = 0; round < MOST_ROUNDS; round += 1) {
-    const values = pathValues(deals, house, totalChange(deals, house, premiums), preferences);
+    const common = changes(change, deals, effects, paying, premiums);
+    for (let i = 0; i < weight.length; i += 1) {
+      const s = paying.state[i] ?? 0;
+      weight[i] = meanSlope(capital[s] ?? 0, slope[s] ?? 0, change[i] ?? 0, preferences);
+    }
+    const rest = idle.gain(common);
+    const sure = sumByBlock(everyState, (i) => weight[i] ?? 0) + (common === 0 ? rest.slope : rest.gain / common);
     const next = deals.map((deal, l) => {
-      const payoff = (values.payoffs[l] ?? 0) / values.sure;
-      const reinstatement = (values.reinstatements[l] ?? 0) / values.sure;
-      const cost = payoff * (1 + deal.lossAdjustment) + deal.fixedExpense / house.sureValue / deal.layer.line;
-      return cost / ((1 - deal.deductions) / house.sureValue + (1 - deal.reinstatementDeductions) * reinstatement);
+      const places = paying.places[l] ?? new Uint32Array(0);
+      const { blockStart, payoff, reinstatement } = deal.paying;
+      const paid = sumByBlock(blockStart, (i) => (weight[places[i] ?? 0] ?? 0) * (payoff[i] ?? 0)) / sure;
+      const reinstated = sumByBlock(blockStart, (i) => (weight[places[i] ?? 0] ?? 0) * (reinstatement[i] ?? 0)) / sure;
+      const cost = paid * (1 + deal.lossAdjustment) + deal.fixedExpense / sureValue / deal.layer.line;
+      return cost / ((1 - deal.deductions) / sureValue + (1 - deal.reinstatementDeductions) * reinstated);
     });
     const moved = Math.max(...next.map((p, l) => Math.abs(p - (premiums[l] ?? 0)) / Math.max(p, 1e-300)));
     premiums = next;
-    if (moved < 1e-11) break;
+    if (moved < 1e-12) break;
   }
-  premiums = scaled(deals, house, preferences, premiums);
-  return { layers: premiums, total: deals.reduce((sum, deal, l) => sum + deal.layer.line * (premiums[l] ?? 0), 0) };
+  const value = deals.reduce((sum, deal, l) => sum + deal.layer.line * (premiums[l] ?? 0), 0);
+  return { layers: premiums, total: { value, standardError: value * errorOfScale(house, deals, effects, paying, idle, premiums) } };
 }
 
-/** Multiplies all premiums by the factor at which the programme's expected gain is 0, by the secant method. */
-function scaled(deals: readonly Deal[], house: House, preferences: Preferences, premiums: readonly number[]): number[] {
-  const at = (factor: number): number => gainOf(totalChange(deals, house, premiums.map((p) => p * factor)), house, preferences);
-  let [low, high] = [1, 1 + 1e-6];
-  let [gainLow, gainHigh] = [at(low), at(high)];
-  for (let step = 0; step < 20 && gainHigh !== gainLow; step += 1) {
-    const next = high - (gainHigh * (high - low)) / (gainHigh - gainLow);
-    [low, gainLow] = [high, gainHigh];
-    if (Math.abs(next - high) < 1e-14) break;
-    high = next;
-    gainHigh = at(high);
+/** Standard error of the factor on all premiums at which the expected gain is 0: sd of the gain over its derivative. */
+function errorOfScale(house: House, deals: readonly Deal[], effects: readonly CapitalEffect[], paying: PayingStates, idle: IdleStates, premiums: readonly number[]): number {
+  const { capital, slope, preferences } = house;
+  const change = new Float64Array(paying.state.length);
+  const common = changes(change, deals, effects, paying, premiums);
+  const income = effects.reduce((sum, effect, l) => sum + effect.ofPremium * (premiums[l] ?? 0), 0);
+  const rate = new Float64Array(paying.state.length).fill(income);
+  deals.forEach((deal, l) => {
+    const back = (effects[l]?.ofReinstatement ?? 0) * (premiums[l] ?? 0);
+    paying.places[l]?.forEach((at, i) => {
+      rate[at] = (rate[at] ?? 0) + back * (deal.paying.reinstatement[i] ?? 0);
+    });
+  });
+  const rest = idle.gain(common);
+  let [squares, derivative] = [rest.squares, income * rest.slope];
+  for (let i = 0; i < change.length; i += 1) {
+    const s = paying.state[i] ?? 0;
+    const [k, before, moved] = [capital[s] ?? 0, slope[s] ?? 0, change[i] ?? 0];
+    const gained = utilityGainFrom(k, before, moved, preferences);
+    squares += gained * gained;
+    derivative += (rate[i] ?? 0) * slopeAfter(k, before, moved, gained, preferences);
   }
-  return premiums.map((p) => p * high);
+  return Math.sqrt(squares) / derivative;
 }

@@ -1,57 +1,38 @@
-import exp from '@stdlib/math-base-special-exp';
-import ln from '@stdlib/math-base-special-ln';
 import type { House } from '../house/house';
-import { marginalUtility, utilityGain, type Preferences } from '../house/utility';
-import { moments, type Estimate } from '../measures/sums';
-import { BLOCK_STATES } from '../model/inputs';
-import type { Deal } from './deal';
+import { IdleStates } from '../house/idle-states';
+import { slopeAfter, utilityGainFrom } from '../house/utility';
+import type { Estimate } from '../measures/sums';
+import { capitalEffect, type Deal } from './deal';
 
-/** Change of the house's capital share in a state for each unit of premium, at the deal's line. */
-function perPremium(deal: Deal, house: House, state: number): number {
-  const kept = (1 - deal.deductions) / house.sureValue + (1 - deal.reinstatementDeductions) * (deal.reinstatement[state] ?? 0);
-  return deal.layer.line * kept * deal.toCapitalShare;
-}
+const MOST_STEPS = 100;
 
-/** Change that comes whatever the premium: the payoff with its adjustment, and the fixed expense at the year's end. */
-function whateverPremium(deal: Deal, house: House, state: number): number {
-  const payoff = deal.layer.line * (deal.payoff[state] ?? 0) * (1 + deal.lossAdjustment);
-  return -(payoff + deal.fixedExpense / house.sureValue) * deal.toCapitalShare;
-}
-
-/** Capital change of a deal in a state at a premium for 100%. */
-export function capitalChange(deal: Deal, house: House, state: number, premium: number): number {
-  return premium * perPremium(deal, house, state) + whateverPremium(deal, house, state);
-}
-
-/** E[u(k + change) − u(k)] and its derivative in the premium. */
-function expectedGain(deal: Deal, house: House, preferences: Preferences, premium: number): { gain: number; slope: number } {
-  const { states, capital } = house;
-  const power = 1 - preferences.riskAversion;
-  let gain = 0;
-  let slope = 0;
-  for (let from = 0; from < states; from += BLOCK_STATES) {
-    const to = Math.min(from + BLOCK_STATES, states);
-    let blockGain = 0;
-    let blockSlope = 0;
-    for (let s = from; s < to; s += 1) {
+/** Σ [u(k + change) − u(k)] over all states, its derivative in the premium, and the sum of squared gains. */
+function totalGain(deal: Deal, house: House, idle: IdleStates, premium: number): { gain: number; slope: number; squares: number } {
+  const { blockStart, state, payoff, reinstatement } = deal.paying;
+  const { capital, slope: slopes, preferences } = house;
+  const effect = capitalEffect(deal, house.sureValue);
+  let [gain, slope, squares] = [0, 0, 0];
+  for (let b = 0; b + 1 < blockStart.length; b += 1) {
+    let [blockGain, blockSlope, blockSquares] = [0, 0, 0];
+    const to = blockStart[b + 1] ?? 0;
+    for (let i = blockStart[b] ?? 0; i < to; i += 1) {
+      const s = state[i] ?? 0;
       const k = capital[s] ?? 0;
-      const rate = perPremium(deal, house, s);
-      const change = premium * rate + whateverPremium(deal, house, s);
-      const gained = utilityGain(k, change, preferences);
-      const end = k + change;
+      const before = slopes[s] ?? 0;
+      const rate = effect.ofPremium + effect.ofReinstatement * (reinstatement[i] ?? 0);
+      const change = premium * rate + effect.ofPayoff * (payoff[i] ?? 0) + effect.fixed;
+      const gained = utilityGainFrom(k, before, change, preferences);
       blockGain += gained;
-      // Above the floor u′ follows from the gain: end^(1−γ) = k^(1−γ) + (1−γ)·gain saves an exponential a state.
-      blockSlope += rate * (power !== 0 && k >= preferences.floor && end >= preferences.floor
-        ? (exp(power * ln(k)) + power * gained) / end
-        : marginalUtility(end, preferences));
+      blockSquares += gained * gained;
+      blockSlope += rate * slopeAfter(k, before, change, gained, preferences);
     }
     gain += blockGain;
     slope += blockSlope;
+    squares += blockSquares;
   }
-  return { gain: gain / states, slope: slope / states };
+  const rest = idle.gain(premium * effect.ofPremium + effect.fixed);
+  return { gain: gain + rest.gain, slope: slope + effect.ofPremium * rest.slope, squares: squares + rest.squares };
 }
-
-const MOST_STEPS = 100;
 
 /**
  * Walk-away premium of a layer at its written line, for 100%: the one at which the house is as well off as not writing,
@@ -59,16 +40,17 @@ const MOST_STEPS = 100;
  * where it is not above 0, comes up to the root without passing it.
  * Source: the principle of equivalent utility, N. L. Bowers et al., Actuarial Mathematics (1997), chapter 1.
  */
-export function walkAwayPremium(deal: Deal, house: House, preferences: Preferences, marginal: number): Estimate {
+export function walkAwayPremium(deal: Deal, house: House, marginal: number): Estimate {
+  const idle = new IdleStates(house, deal.paying.state);
   let premium = marginal;
-  let slope = 1;
-  for (let step = 0; step < MOST_STEPS; step += 1) {
-    const at = expectedGain(deal, house, preferences, premium);
-    slope = at.slope;
+  for (let step = 0; ; step += 1) {
+    const at = totalGain(deal, house, idle, premium);
     const move = at.gain / at.slope;
     premium -= move;
-    if (Math.abs(move) <= 1e-12 * Math.abs(premium)) break;
+    // Newton's error after a step is of the order of the step's square.
+    if (Math.abs(move) <= 1e-7 * Math.abs(premium) || step === MOST_STEPS) {
+      const spread = Math.sqrt(at.squares / (house.states - 1) / house.states);
+      return { value: premium, standardError: (spread * house.states) / at.slope };
+    }
   }
-  const spread = moments(house.states, (s) => utilityGain(house.capital[s] ?? 0, capitalChange(deal, house, s, premium), preferences));
-  return { value: premium, standardError: spread.standardError / slope };
 }

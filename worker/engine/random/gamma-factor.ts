@@ -1,5 +1,5 @@
 import exp from '@stdlib/math-base-special-exp';
-import ln from '@stdlib/math-base-special-ln';
+import { ln } from '../math/ln';
 import { normalQuantile } from '../math/normal';
 import { PURPOSE } from './keys';
 import { philox, uniform52 } from './philox';

@@ -4,7 +4,7 @@ import { catalogueKeys, drawOccurrences, type Occurrences } from './occurrences'
 
 const SEED = '0123456789abcdef';
 const draw = (catalogue: Catalogue, block = 0): Occurrences =>
-  drawOccurrences([{ catalogue, keys: catalogueKeys(catalogue, SEED), firstEvent: 0 }], block, BLOCK_STATES, 1);
+  drawOccurrences([{ catalogue, keys: catalogueKeys(catalogue, SEED), firstEvent: 0, rate: catalogue.ratePerYear }], block, BLOCK_STATES, 1);
 
 /** One line an occurrence, by the event's name. */
 function lines(catalogue: Catalogue, drawn: Occurrences): string[] {

@@ -1,4 +1,4 @@
-import ln from '@stdlib/math-base-special-ln';
+import { ln } from '../math/ln';
 import { normalQuantile } from '../math/normal';
 import { BLOCK_STATES, type Catalogue } from '../model/inputs';
 import { gammaFactor } from './gamma-factor';
@@ -169,6 +169,8 @@ export interface KeyedCatalogue {
   readonly keys: CatalogueKeys;
   /** Number of its first event, counted through all catalogues. */
   readonly firstEvent: number;
+  /** Rate of each event with its factor: what is drawn. The shape of a group stays that of the catalogue's own rates. */
+  readonly rate: Float64Array;
 }
 
 /**
@@ -185,7 +187,7 @@ export function drawOccurrences(
   const words = new Uint32Array(4);
   const drawn = new Growing();
   const place = { block, states, inceptionDay };
-  for (const { catalogue, keys, firstEvent } of catalogues) {
+  for (const { catalogue, keys, firstEvent, rate } of catalogues) {
     const factors = groupFactors(keys, block, states, words);
     for (let i = 0; i < catalogue.eventNames.length; i += 1) {
       const group = catalogue.groupIndex[i] ?? -1;
@@ -194,7 +196,7 @@ export function drawOccurrences(
         words,
         {
           number: firstEvent + i,
-          rate: catalogue.ratePerYear[i] ?? 0,
+          rate: rate[i] ?? 0,
           seasonDay: catalogue.seasonDay[i] ?? Number.NaN,
           key0: keys.event0[i] ?? 0,
           key1: keys.event1[i] ?? 0,

@@ -8,7 +8,9 @@ import type { BasisTerms } from '../../../api/contract/house';
 /** The valuation as the contract shows it; parsed, so that nothing else is ever stored. */
 export function resultOf(valuation: Valuation, terms: ProgrammeTermsRecord, basis: BasisTerms): RunResult {
   const { programme, house, selfCheck } = valuation;
-  const tail = (points: typeof house.tailBefore) => points.map(({ years, value }) => ({ years, loss: value ?? 0 }));
+  const tail = (points: typeof house.tailBefore) => points.map(({ years, value, valueError }) => ({ years, loss: value ?? 0, lossError: valueError ?? 0 }));
+  const said = (value: number | null | undefined, error: number | null | undefined) => (value === null || value === undefined ? null : { value, standardError: error ?? 0 });
+  const { occurrence, aggregate, ...whole } = programme;
   return runResult.parse({
     currency: terms.currency,
     states: valuation.states,
@@ -18,16 +20,14 @@ export function resultOf(valuation: Valuation, terms: ProgrammeTermsRecord, basi
       expectedLossShareOfLimit: layer.expectedLoss.value / Number(terms.layers.find(({ key }) => key === layer.key)?.limit ?? 1),
     })),
     programme: {
-      expectedLoss: programme.expectedLoss,
-      standardDeviation: programme.standardDeviation,
-      walkAwayPremium: programme.walkAwayPremium,
-      technicalPremium: programme.technicalPremium,
-      exceedance: programme.occurrence.map((point, i) => ({
+      ...whole,
+      expectedLossShareOfLimit: whole.expectedLoss.value / terms.layers.reduce((sum, { limit }) => sum + Number(limit), 0),
+      exceedance: occurrence.map((point, i) => ({
         years: point.years,
-        occurrence: point.value,
-        occurrenceTail: point.tailValue,
-        aggregate: programme.aggregate[i]?.value ?? null,
-        aggregateTail: programme.aggregate[i]?.tailValue ?? null,
+        occurrence: said(point.value, point.valueError),
+        occurrenceTail: said(point.tailValue, point.tailValueError),
+        aggregate: said(aggregate[i]?.value, aggregate[i]?.valueError),
+        aggregateTail: said(aggregate[i]?.tailValue, aggregate[i]?.tailValueError),
       })),
     },
     lens: valuation.lens,

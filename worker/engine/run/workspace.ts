@@ -1,0 +1,101 @@
+import type { LeanBins } from '../measures/lean-bins';
+import type { House, HousePart } from '../house/house';
+import { houseOf, risklessRateOf } from '../house/house';
+import { makeLaws, type Laws } from '../losses/laws';
+import { blockIn, isBlock, statesOfBlock, type BlockResult } from '../model/blocks';
+import { BLOCK_STATES } from '../model/inputs';
+import { doubles, type Allocate } from '../model/memory';
+import type { Prepared } from '../model/prepare';
+import { EngineInputError } from '../model/refusal';
+import type { LayerPart } from './layer-task';
+
+/** Columns over all states, filled block by block; whole numbers of bins beside them. */
+export interface StateColumns {
+  readonly bookLoss: Float64Array;
+  readonly occurrenceLoss: Float64Array;
+  readonly aggregateLoss: Float64Array;
+  readonly capital: Float64Array;
+  readonly slope: Float64Array;
+  readonly decile: Uint8Array;
+  readonly lensBin: Uint8Array;
+}
+
+/** What the threads of a run share: they fill it apart, and read what the others filled once all are done. */
+export interface SharedMemory {
+  readonly laws: Laws;
+  readonly columns: StateColumns;
+}
+
+export function shareMemory(size: { rows: number; tabledRows: number; states: number }, allocate: Allocate): SharedMemory {
+  const column = (): Float64Array => doubles(allocate, size.states);
+  return {
+    laws: makeLaws(size.rows, size.tabledRows, allocate),
+    columns: {
+      bookLoss: column(),
+      occurrenceLoss: column(),
+      aggregateLoss: column(),
+      capital: column(),
+      slope: column(),
+      decile: new Uint8Array(allocate(size.states)),
+      lensBin: new Uint8Array(allocate(size.states)),
+    },
+  };
+}
+
+/** One run while it is valued: its inputs, the memory it fills, and what has been told of it so far. */
+export class Workspace {
+  readonly blocks: BlockResult[] = [];
+  readonly layers: LayerPart[] = [];
+  risklessRate = Number.NaN;
+  private parts: readonly HousePart[] = [];
+  private joinedHouse: House | null = null;
+  bins: LeanBins | null = null;
+
+  constructor(
+    readonly prepared: Prepared,
+    readonly memory: SharedMemory,
+    readonly allocate: Allocate,
+  ) {}
+
+  /** Takes in a block, valued here, by another thread or before a crash. */
+  takeBlock(index: number, memory: ArrayBuffer | SharedArrayBuffer): void {
+    const states = statesOfBlock(this.prepared.inputs.grid.states, index);
+    if (!isBlock(memory, index, states)) throw new Error(`what should be block ${index} of the run is something else`);
+    const block = blockIn(memory);
+    const { columns } = this.memory;
+    const from = index * BLOCK_STATES;
+    columns.bookLoss.set(block.bookLoss, from);
+    columns.occurrenceLoss.set(block.occurrenceLoss, from);
+    columns.aggregateLoss.set(block.aggregateLoss, from);
+    this.blocks[index] = block;
+  }
+
+  /** Every block in its order. @throws where one is missing */
+  allBlocks(): readonly BlockResult[] {
+    const { blocks } = this.prepared;
+    for (let b = 0; b < blocks; b += 1) if (this.blocks[b] === undefined) throw new EngineInputError('The blocks of a run must all be there.');
+    return this.blocks;
+  }
+
+  findRate(): number {
+    this.risklessRate = risklessRateOf(this.prepared, this.memory.columns.bookLoss);
+    return this.risklessRate;
+  }
+
+  takeHouse(parts: readonly HousePart[], risklessRate: number): void {
+    this.parts = parts;
+    this.risklessRate = risklessRate;
+    this.joinedHouse = null;
+  }
+
+  get house(): House {
+    if (this.parts.length === 0) throw new Error('the house is not known yet');
+    this.joinedHouse ??= houseOf(this.prepared, this.memory.columns, this.parts, this.risklessRate);
+    return this.joinedHouse;
+  }
+
+  get leanBins(): LeanBins {
+    if (this.bins === null) throw new Error('the lean order is not known yet');
+    return this.bins;
+  }
+}
