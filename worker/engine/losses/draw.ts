@@ -34,20 +34,25 @@ export function lossOfRow(laws: Laws, table: PreparedTable, row: number, score: 
 export function addLosses(losses: Float64Array, table: PreparedTable, laws: Laws, occurrences: Occurrences, block: number): void {
   const words = new Uint32Array(4);
   const { rowOfEvent, firstEvent, firstRow, kind, commonWeight, ownWeight, key0, key1, toContractCurrency } = table;
-  const events = rowOfEvent.length;
-  for (let i = 0; i < occurrences.count; i += 1) {
-    const event = (occurrences.event[i] ?? 0) - firstEvent;
-    if (event < 0 || event >= events) continue;
+  const { eventStart, score: scores, ordinal } = occurrences;
+  for (let event = 0; event < rowOfEvent.length; event += 1) {
     const row = rowOfEvent[event] ?? -1;
     if (row < 0) continue;
+    const from = eventStart[firstEvent + event] ?? 0;
+    const to = eventStart[firstEvent + event + 1] ?? 0;
+    if (from === to) continue;
     const threshold = laws.threshold[firstRow + row] ?? 0;
-    const own = ownWeight[row] ?? 0;
-    let score = (commonWeight[row] ?? 0) * (occurrences.score[i] ?? 0);
-    if (score + own * LARGEST_SCORE <= threshold) continue;
-    if (own > 0 && kind[row] !== CERTAIN) {
-      philox(words, occurrences.ordinal[i] ?? 0, block, PURPOSE.table, 0, key0[row] ?? 0, key1[row] ?? 0);
-      score += own * normalQuantile(uniform52(words[0] ?? 0, words[1] ?? 0));
+    const common = commonWeight[row] ?? 0;
+    const own = kind[row] === CERTAIN ? 0 : (ownWeight[row] ?? 0);
+    const reach = threshold - own * LARGEST_SCORE;
+    for (let i = from; i < to; i += 1) {
+      let score = common * (scores[i] ?? 0);
+      if (score <= reach) continue;
+      if (own > 0) {
+        philox(words, ordinal[i] ?? 0, block, PURPOSE.table, 0, key0[row] ?? 0, key1[row] ?? 0);
+        score += own * normalQuantile(uniform52(words[0] ?? 0, words[1] ?? 0));
+      }
+      if (score > threshold) losses[i] = (losses[i] ?? 0) + lossOfRow(laws, table, row, score) * toContractCurrency;
     }
-    if (score > threshold) losses[i] = (losses[i] ?? 0) + lossOfRow(laws, table, row, score) * toContractCurrency;
   }
 }

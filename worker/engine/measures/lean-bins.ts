@@ -91,13 +91,21 @@ export function leanBins(house: House, decile: Uint8Array, lensBin: Uint8Array):
   const { states, capital, slope, slopeSum } = house;
   const edges = lensEdges(states);
   const tenths = Array.from({ length: DECILES }, (_unused, d) => Math.floor(((d + 1) * states) / DECILES));
-  partsOf(capital, tenths, decile);
-  partsOf(capital, edges.map(({ to }) => to), lensBin);
+  // One division of the order serves both: a part lies within one tenth and one bin.
+  const ends = [...new Set([...tenths, ...edges.map(({ to }) => to)])].sort((a, b) => a - b);
+  const tenthOf = Uint8Array.from(ends, (end) => tenths.findIndex((to) => end <= to));
+  const binOf = Uint8Array.from(ends, (end) => edges.findIndex(({ to }) => end <= to));
+  partsOf(capital, ends, lensBin);
   const hunger = new Float64Array(edges.length);
   const lensCapital = new Float64Array(edges.length);
   const tenthCapital = new Float64Array(DECILES);
   for (let s = 0; s < states; s += 1) {
-    const [b, d, k] = [lensBin[s] ?? 0, decile[s] ?? 0, capital[s] ?? 0];
+    const part = lensBin[s] ?? 0;
+    const b = binOf[part] ?? 0;
+    const d = tenthOf[part] ?? 0;
+    const k = capital[s] ?? 0;
+    lensBin[s] = b;
+    decile[s] = d;
     hunger[b] = (hunger[b] ?? 0) + (slope[s] ?? 0);
     lensCapital[b] = (lensCapital[b] ?? 0) + k;
     tenthCapital[d] = (tenthCapital[d] ?? 0) + k;

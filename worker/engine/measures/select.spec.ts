@@ -13,4 +13,11 @@ describe('ranks without sorting', () => {
       }),
     );
   });
+
+  it('are found among many that crowd at one end, as capital does', () => {
+    const column = Float64Array.from({ length: 60_000 }, (_unused, i) => (i % 3 === 0 ? 1.05 : 1.05 - ((i * 0.6180339887498949) % 1) ** 24));
+    const ranks = [0, 5, 600, 6000, 20_000, 39_999, 40_000, 59_999];
+    const sorted = column.slice().sort();
+    expect(selectRanks(column, ranks)).toEqual(ranks.map((rank) => sorted[rank]));
+  });
 });

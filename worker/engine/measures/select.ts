@@ -48,9 +48,75 @@ export function selectRanks(column: Float64Array, ranks: readonly number[]): num
     if (values !== undefined) values[at] = column[i] ?? 0;
     filled[slot] = at + 1;
   }
-  for (const values of members) values.sort();
+  const found = new Map<Float64Array, Sorted>();
+  const among = (values: Float64Array, rank: number): number => {
+    const sorted = found.get(values) ?? new Sorted(values);
+    found.set(values, sorted);
+    return sorted.at(rank);
+  };
   return ranks.map((rank) => {
     const place = bucketOfRank.get(rank);
-    return place === undefined ? Number.NaN : (wanted.get(place.bucket)?.[rank - place.below] ?? Number.NaN);
+    const values = place === undefined ? undefined : wanted.get(place.bucket);
+    return place === undefined || values === undefined ? Number.NaN : among(values, rank - place.below);
   });
+}
+
+const FEW = 512;
+const SLICES = 1024;
+
+/** The values of one bucket, of which only the slices asked for are put in order, each by slices of its own. */
+class Sorted {
+  private ends = new Uint32Array(0);
+  private slices: Float64Array;
+  private readonly inner = new Map<number, Sorted>();
+
+  constructor(values: Float64Array) {
+    this.slices = values;
+    let [least, most] = [values[0] ?? 0, values[0] ?? 0];
+    for (let i = 0; i < values.length; i += 1) {
+      const x = values[i] ?? 0;
+      if (x < least) least = x;
+      if (x > most) most = x;
+    }
+    // Many states are alike to the last bit, those without any loss above all.
+    if (least === most) return;
+    const scale = (SLICES - 1) / (most - least);
+    if (values.length <= FEW || !(scale < Infinity)) values.sort();
+    else this.slice(values, least, scale);
+  }
+
+  /** Slices rise with their values, whatever rounding does. */
+  private slice(values: Float64Array, least: number, scale: number): void {
+    const n = values.length;
+    const sliceOf = new Uint16Array(n);
+    const starts = new Uint32Array(SLICES + 1);
+    for (let i = 0; i < n; i += 1) {
+      const slice = Math.floor(((values[i] ?? 0) - least) * scale);
+      sliceOf[i] = slice;
+      starts[slice + 1] = (starts[slice + 1] ?? 0) + 1;
+    }
+    for (let i = 0; i < SLICES; i += 1) starts[i + 1] = (starts[i + 1] ?? 0) + (starts[i] ?? 0);
+    this.ends = starts.slice(1);
+    this.slices = new Float64Array(n);
+    for (let i = 0; i < n; i += 1) {
+      const slice = sliceOf[i] ?? 0;
+      const at = starts[slice] ?? 0;
+      this.slices[at] = values[i] ?? 0;
+      starts[slice] = at + 1;
+    }
+  }
+
+  at(rank: number): number {
+    if (this.ends.length === 0) return this.slices[rank] ?? Number.NaN;
+    let [low, high] = [0, SLICES - 1];
+    while (low < high) {
+      const middle = (low + high) >>> 1;
+      if ((this.ends[middle] ?? 0) <= rank) low = middle + 1;
+      else high = middle;
+    }
+    const from = low === 0 ? 0 : (this.ends[low - 1] ?? 0);
+    const inner = this.inner.get(low) ?? new Sorted(this.slices.subarray(from, this.ends[low] ?? 0));
+    this.inner.set(low, inner);
+    return inner.at(rank - from);
+  }
 }

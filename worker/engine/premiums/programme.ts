@@ -99,7 +99,7 @@ export function programmeWalkAway(deals: readonly Deal[], house: House, start: r
     });
     const moved = Math.max(...next.map((p, l) => Math.abs(p - (premiums[l] ?? 0)) / Math.max(p, 1e-300)));
     premiums = next;
-    if (moved < 1e-12) break;
+    if (moved < 1e-10) break;
   }
   const value = deals.reduce((sum, deal, l) => sum + deal.layer.line * (premiums[l] ?? 0), 0);
   return { layers: premiums, total: { value, standardError: value * errorOfScale(house, deals, effects, paying, idle, premiums) } };

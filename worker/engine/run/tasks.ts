@@ -47,7 +47,7 @@ export function perform(workspace: Workspace, task: Task): Found {
     case 'check':
       return { kind: 'check', means: exactMeans(prepared, task.from, task.to) };
     case 'block':
-      return { kind: 'block', index: task.index, memory: valueBlock(prepared, memory.laws, task.index, workspace.allocate) };
+      return { kind: 'block', index: task.index, memory: valueBlock(prepared, memory.laws, task.index, workspace.allocate, workspace.scratch) };
     case 'rate':
       return { kind: 'rate', risklessRate: workspace.findRate() };
     case 'house':

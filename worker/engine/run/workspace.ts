@@ -7,6 +7,7 @@ import { BLOCK_STATES } from '../model/inputs';
 import { doubles, type Allocate } from '../model/memory';
 import type { Prepared } from '../model/prepare';
 import { EngineInputError } from '../model/refusal';
+import { Scratch } from '../blocks/scratch';
 import type { LayerPart } from './layer-task';
 
 /** Columns over all states, filled block by block; whole numbers of bins beside them. */
@@ -50,12 +51,19 @@ export class Workspace {
   private parts: readonly HousePart[] = [];
   private joinedHouse: House | null = null;
   bins: LeanBins | null = null;
+  private ownScratch: Scratch | null = null;
 
   constructor(
     readonly prepared: Prepared,
     readonly memory: SharedMemory,
     readonly allocate: Allocate,
   ) {}
+
+  /** Of this thread alone. */
+  get scratch(): Scratch {
+    this.ownScratch ??= new Scratch(this.prepared.events);
+    return this.ownScratch;
+  }
 
   /** Takes in a block, valued here, by another thread or before a crash. */
   takeBlock(index: number, memory: ArrayBuffer | SharedArrayBuffer): void {

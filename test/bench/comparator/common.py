@@ -1,0 +1,316 @@
+"""What both comparators share: reading a case, timing, and the arithmetic that takes no time.
+
+A case is a folder of raw little-endian columns and case.json; README.md gives the names and the form.
+"""
+import argparse
+import dataclasses
+import json
+import math
+import pathlib
+import platform
+import resource
+import time
+
+import numpy as np
+import scipy
+from scipy import special
+
+RETURN_PERIODS = (2, 5, 10, 20, 50, 100, 200, 250, 500, 1000)
+HOUSE_PERIODS = (100, 250)
+FEWEST_YEARS = 10
+THIN_STATES = 2500
+DAYS = 365
+
+
+@dataclasses.dataclass(frozen=True)
+class Layer:
+    """Terms of a layer for 100%; `premium` is that of a layer of the book."""
+
+    limit: float
+    attachment: float
+    annual_deductible: float
+    reinstatements: tuple
+    line: float
+    brokerage: float
+    premium: float = 0.0
+
+    @property
+    def cover(self):
+        """Most that the layer pays in a year."""
+        return (len(self.reinstatements) + 1) * self.limit
+
+    def scaled(self, factor):
+        return dataclasses.replace(self, limit=self.limit * factor, attachment=self.attachment * factor)
+
+
+def layer_of(terms):
+    known = {"key", "limit", "attachment", "annualDeductible", "reinstatements", "line", "brokerage", "premium"}
+    if not set(terms) <= known:
+        raise SystemExit(f"terms that are not compared: {sorted(set(terms) - known)}")
+    return Layer(
+        terms["limit"], terms["attachment"], terms["annualDeductible"], tuple(terms["reinstatements"]),
+        terms["line"], terms["brokerage"], terms.get("premium", 0.0),
+    )
+
+
+@dataclasses.dataclass(frozen=True)
+class LossTable:
+    """Rows of a loss table, with the law of each: 0 certain, 1 lognormal (p location, q scale), 2 beta (p, q its shapes)."""
+
+    event: np.ndarray
+    mean: np.ndarray
+    sd: np.ndarray
+    common_share: np.ndarray
+    exposed: np.ndarray
+    events: int
+
+    def laws(self):
+        mean, sd, exposed = self.mean, self.sd, self.exposed
+        kind = np.where(sd == 0, 0, np.where(np.isnan(exposed), 1, 2))
+        p, q = np.zeros_like(mean), np.zeros_like(mean)
+        log = kind == 1
+        variance = np.log1p((sd[log] / mean[log]) ** 2)
+        p[log], q[log] = np.log(mean[log]) - variance / 2, np.sqrt(variance)
+        beta = kind == 2
+        m, s = mean[beta] / exposed[beta], sd[beta] / exposed[beta]
+        total = m * (1 - m) / s**2 - 1
+        p[beta], q[beta] = m * total, (1 - m) * total
+        return kind, p, q
+
+
+@dataclasses.dataclass(frozen=True)
+class Case:
+    states: int
+    seed: int
+    inception_day: float
+    rate: np.ndarray
+    season_day: np.ndarray
+    peril: np.ndarray
+    region: np.ndarray
+    perils: list
+    regions: list
+    programme: LossTable
+    layers: tuple
+    book: LossTable
+    book_layers: tuple
+    basis: dict
+
+
+def read_case(folder):
+    terms = json.loads((folder / "case.json").read_text(encoding="utf-8"))
+    column = lambda name, kind: np.fromfile(folder / name, dtype=np.dtype(kind).newbyteorder("<"))
+    rate = column("catalogue.rate.f64", np.float64)
+
+    def table(name):
+        names = ("mean", "sd", "common_share", "exposed")
+        return LossTable(column(f"{name}.event.i32", np.int32), *(column(f"{name}.{one}.f64", np.float64) for one in names), len(rate))
+
+    seed = terms["seed"]
+    return Case(
+        int(terms["states"]), int(seed, 16) if isinstance(seed, str) else int(seed), terms["inceptionDay"],
+        rate, column("catalogue.season_day.f64", np.float64),
+        column("catalogue.peril.u16", np.uint16), column("catalogue.region.u16", np.uint16), terms["perils"], terms["regions"],
+        table("programme"), tuple(map(layer_of, terms["programme"]["layers"])),
+        table("book"), tuple(map(layer_of, terms["book"]["layers"])), terms["basis"],
+    )
+
+
+@dataclasses.dataclass
+class Occurrences:
+    """In order of state and day; losses are filled after drawing. Columns of one length."""
+
+    state: np.ndarray
+    event: np.ndarray
+    day: np.ndarray
+    score: np.ndarray = None
+    programme_loss: np.ndarray = None
+    book_loss: np.ndarray = None
+
+
+def read_occurrences(folder):
+    """Occurrences and losses that another program drew. States and events become NumPy's index type."""
+    column = lambda name, kind: np.fromfile(folder / name, dtype=np.dtype(kind).newbyteorder("<"))
+    return Occurrences(
+        column("state.u32", np.uint32).astype(np.intp), column("event.u32", np.uint32).astype(np.intp), column("day.f64", np.float64),
+        None, column("programme_loss.f64", np.float64), column("book_loss.f64", np.float64),
+    )
+
+
+class Clock:
+    """Seconds of each phase."""
+
+    def __init__(self):
+        self.phases, self.start = {}, time.perf_counter()
+        self.last = self.start
+
+    def phase(self, name):
+        now = time.perf_counter()
+        self.phases[name] = self.phases.get(name, 0) + now - self.last
+        self.last = now
+
+    @property
+    def total(self):
+        return self.last - self.start
+
+
+def lens_ends(states):
+    """Bins of the lean lens, even in the logarithm of the share of states: shares from and to, widths, last ranks."""
+    step = math.exp(math.log(10) / 12)
+    bins, before, share = [], 0, 1e-4 * step
+    while before < states:
+        to_share = 1.0 if share > 1 / math.sqrt(step) else share
+        end = min(states, math.floor(to_share * states))
+        if end > before:
+            from_share = bins[-1][1] if bins else to_share / step
+            bins.append((from_share, to_share, math.log(to_share / bins[-1][1]) if bins else math.log(step), end))
+            before = end
+        share *= step
+    return bins
+
+
+def net_premium(case):
+    """The book's premium at inception, net of what is paid out of it."""
+    basis = case.basis
+    kept = sum(x.line * x.premium * (1 - x.brokerage - basis["taxes"] - basis["variableExpense"]) for x in case.book_layers)
+    return kept - basis["fixedExpensePerContract"] - basis["attritionalAndOutward"]
+
+
+def loss_free_capital(case):
+    basis = case.basis
+    riskless = basis["risklessRate"]
+    own = basis.get("returnOnAssets")
+    return 1 + (riskless if own is None else own) + net_premium(case) * (1 + riskless) / basis["capital"]
+
+
+def exact_means(case, layers):
+    """Σ rate·mean, and of each layer Σ rate·E[Y] = Σ rate·(E min(X, A + L) − E min(X, A)), by the laws of the rows."""
+    table = case.programme
+    kind, p, q = table.laws()
+    rate = case.rate[table.event]
+    certain, log, beta = (np.flatnonzero(kind == k) for k in range(3))
+    a, b, exposed, share = p[beta], q[beta], table.exposed[beta], table.mean[beta] * rate[beta]
+    log_front = special.betaln(a, b) + np.log(a)
+
+    def limited(d):
+        """Σ rate·E min(X, d)."""
+        if d <= 0:
+            return 0.0
+        total = rate[certain] @ np.minimum(table.mean[certain], d)
+        z = (math.log(d) - p[log]) / q[log]
+        total += rate[log] @ (table.mean[log] * special.ndtr(z - q[log]) + d * special.ndtr(-z))
+        within = np.flatnonzero(d < exposed)
+        x, a_in, b_in = d / exposed[within], a[within], b[within]
+        below = special.betainc(a_in, b_in, x)
+        # I(a + 1, b) = I(a, b) − x^a·(1 − x)^b/(a·B(a, b)).
+        next_below = below - np.exp(a_in * np.log(x) + b_in * np.log1p(-x) - log_front[within])
+        return total + share.sum() - share[within].sum() + share[within] @ next_below + rate[beta][within] @ (d * (1 - below))
+
+    known = {d: limited(d) for x in layers for d in (x.attachment, x.attachment + x.limit)}
+    return float(rate @ table.mean), [float(known[x.attachment + x.limit] - known[x.attachment]) for x in layers]
+
+
+def in_errors(simulated, exact, error):
+    if exact == 0 and simulated == 0:
+        return None
+    return float((simulated - exact) / error) if error > 0 else (0.0 if simulated == exact else None)
+
+
+def premium_split(layer, basis, figures, marginal, walk_away):
+    """Every step from the riskless loss to the technical premium; `figures` has E[mZ], E[m]·E[Z], E[mρ] and F/w."""
+    loaded = walk_away * (1 + basis["targetMargin"])
+    technical = max(loaded, basis["minimumRateOnLine"] * layer.limit)
+    return {
+        "risklessLoss": figures["riskless"],
+        "leanLoad": figures["priced"] - figures["riskless"],
+        "lossAdjustment": figures["priced"] * basis["lossAdjustment"],
+        "fixedExpense": figures["fixed"],
+        "brokerageAndExpense": marginal * (layer.brokerage + basis["taxes"] + basis["variableExpense"]),
+        "reinstatementValue": -(1 - basis["taxes"]) * marginal * figures["pricedBack"],
+        "marginalPremium": marginal,
+        "lineSizeLoad": walk_away - marginal,
+        "walkAwayPremium": walk_away,
+        "margin": loaded - walk_away,
+        "minimumTopUp": technical - loaded,
+        "technicalPremium": technical,
+    }
+
+
+def contributors(case, by_event):
+    """Shares of E[m·Z] of the ten largest events, and of perils and regions."""
+    total = by_event.sum()
+    top = np.argpartition(by_event, -min(10, len(by_event)))[-10:]
+    top = [int(e) for e in top[np.argsort(-by_event[top], kind="stable")] if by_event[e] > 0]
+
+    def grouped(names, index):
+        sums = np.bincount(index, by_event, len(names)) / total if total > 0 else np.zeros(len(names))
+        return [{"name": names[g], "priceShare": float(sums[g])} for g in np.argsort(-sums, kind="stable") if sums[g] > 0]
+
+    return {
+        "topEvents": [
+            {"event": e, "peril": case.perils[case.peril[e]], "region": case.regions[case.region[e]], "priceShare": float(by_event[e] / total)}
+            for e in top
+        ],
+        "perils": grouped(case.perils, case.peril),
+        "regions": grouped(case.regions, case.region),
+    }
+
+
+def self_check(states, exact, ground_up, ground_up_error, counted):
+    """Simulated against exact means in standard errors; `counted` has Σ and Σ of squares of each layer's yearly ΣY."""
+    exact_ground, exact_layers = exact
+    errors = []
+    for (total, squares), known in zip(counted, exact_layers):
+        variance = max(squares - total * total / states, 0) / (states - 1)
+        errors.append(in_errors(total / states, known, math.sqrt(variance / states)))
+    ground = in_errors(ground_up, exact_ground, ground_up_error)
+    largest = max((abs(e) for e in (ground, *errors) if e is not None), default=0)
+    return {"groundUp": ground, "layers": errors, "largest": largest, "flagged": largest > 4}
+
+
+def tail_ranks(states, periods):
+    """Of each period the ranks, counted from the smallest, of its value and of one binomial deviation to either side."""
+    ranks = {}
+    for years in periods:
+        beyond = states // years
+        if beyond >= FEWEST_YEARS:
+            spread = math.floor(math.sqrt(beyond * (1 - 1 / years)) + 0.5)
+            ranks[years] = [states - 1 - max(above, 0) for above in (beyond, beyond - spread, min(beyond + spread, states - 1))]
+    return ranks
+
+
+def tail_point(years, states, value, low, high, excess, squares):
+    mean = excess / states
+    return {
+        "years": years,
+        "value": float(value),
+        "valueError": 0.5 * float(low - high),
+        "tailValue": float(value + years * mean),
+        "tailValueError": years * math.sqrt(max(squares / states - mean * mean, 0) / states),
+    }
+
+
+def no_tail_point(years):
+    return {"years": years, "value": None, "valueError": None, "tailValue": None, "tailValueError": None}
+
+
+def run(price):
+    """Runs a comparator from the command line. `price(case, occurrences or None, clock)` gives its results and a function
+    that prices changed layers on what is in memory, given the layers and a clock."""
+    parser = argparse.ArgumentParser(description=price.__doc__)
+    parser.add_argument("folder", type=pathlib.Path)
+    parser.add_argument("--occurrences", type=pathlib.Path, help="price these occurrences instead of drawing")
+    parser.add_argument("--factor", type=float, default=1.1, help="of attachments and limits in the second pass")
+    arguments = parser.parse_args()
+    case = read_case(arguments.folder)
+    drawn = read_occurrences(arguments.occurrences) if arguments.occurrences else None
+    clock = Clock()
+    results, again = price(case, drawn, clock)
+    second = Clock()
+    changed = again(tuple(layer.scaled(arguments.factor) for layer in case.layers), second)
+    print(json.dumps({
+        "timings": {"cold": clock.total, "phases": clock.phases, "again": second.total, "againPhases": second.phases},
+        "peakRssMb": resource.getrusage(resource.RUSAGE_SELF).ru_maxrss / 1024,
+        "versions": {"python": platform.python_version(), "numpy": np.__version__, "scipy": scipy.__version__},
+        "results": results,
+        "again": {key: changed[key] for key in ("perLayer", "programme")},
+    }, allow_nan=False))

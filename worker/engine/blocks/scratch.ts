@@ -1,0 +1,27 @@
+import { BLOCK_STATES } from '../model/inputs';
+import { Occurrences } from '../random/occurrences';
+
+/** Memory that a thread uses again for every block: occurrences, their losses, and a list of those that can count. */
+export class Scratch {
+  readonly occurrences: Occurrences;
+  losses = new Float64Array(0);
+  event = new Uint32Array(0);
+  place = new Uint32Array(0);
+  order = new Uint32Array(0);
+  readonly starts = new Uint32Array(BLOCK_STATES + 1);
+
+  constructor(events: number) {
+    this.occurrences = new Occurrences(events);
+  }
+
+  /** Room for a figure or two of each occurrence drawn. */
+  fit(): void {
+    const { count } = this.occurrences;
+    if (this.losses.length >= count) return;
+    const room = Math.max(count, 65_536) * 2;
+    this.losses = new Float64Array(room);
+    this.event = new Uint32Array(room);
+    this.place = new Uint32Array(room);
+    this.order = new Uint32Array(room);
+  }
+}
