@@ -41,6 +41,36 @@ const premiumSplit = z.object({
   technicalPremium: z.number(),
 });
 
+/** One simulated year of a layer: amounts for 100%, programme currency; the book's loss in house currency. */
+const explainedYear = z.object({
+  state: z.number().int(),
+  occurrences: z.array(
+    z.object({
+      event: z.string(),
+      peril: z.string(),
+      region: z.string(),
+      /** Since inception. */
+      day: z.number(),
+      loss: z.number(),
+      net: z.number(),
+      counted: z.number(),
+      paid: z.number(),
+      reinstatement: z.number(),
+    }),
+  ),
+  counted: z.number(),
+  payoff: z.number(),
+  reinstatement: z.number(),
+  bookLoss: z.number(),
+  /** Capital at the year's end, as a share of opening capital. */
+  capital: z.number(),
+  /** m, today's value of one unit paid in this year. */
+  hunger: z.number(),
+  /** m·Z/S, what the year adds to E[m·Z]. */
+  contribution: z.number(),
+});
+export type ExplainedYear = z.infer<typeof explainedYear>;
+
 export const layerResult = z.object({
   key: z.string(),
   name: z.string(),
@@ -69,6 +99,8 @@ export const layerResult = z.object({
   thin: z.boolean(),
   /** Ten groups of states from the leanest to the most plentiful. */
   deciles: z.array(z.object({ meanCapital: z.number(), lossShare: z.number(), priceShare: z.number() })),
+  /** Simulated years in the middle of each tenth of the price, leanest first, told from occurrence to contribution. */
+  tellingYears: z.array(explainedYear),
   topEvents: z.array(z.object({ event: z.string(), peril: z.string(), region: z.string(), priceShare: z.number() })),
   perils: z.array(z.object({ name: z.string(), priceShare: z.number() })),
   regions: z.array(z.object({ name: z.string(), priceShare: z.number() })),

@@ -1,3 +1,4 @@
+export { explainYear, type ExplainedOccurrence, type ExplainedYear } from './explain/explain';
 export { EngineInputError } from './model/refusal';
 export * from './model/inputs';
 export { prepare, type Prepared } from './model/prepare';

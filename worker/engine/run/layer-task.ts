@@ -1,3 +1,5 @@
+import { explainYear, type ExplainedYear } from '../explain/explain';
+import { tellingYears } from '../explain/telling-years';
 import type { House } from '../house/house';
 import { allowedEvents } from '../layers/filter';
 import { layerStates, type LayerStates } from '../layers/layer-states';
@@ -21,6 +23,7 @@ export interface LayerPart {
   readonly contributors: Contributors;
   readonly deciles: PartSums;
   readonly lens: PartSums;
+  readonly tellingYears: readonly ExplainedYear[];
 }
 
 function emptySums(parts: number): PartSums {
@@ -71,6 +74,7 @@ export function layerTask(workspace: Workspace, index: number): LayerPart {
     contributors: contributors(prepared, byEvent),
     deciles,
     lens,
+    tellingYears: tellingYears(paying, house, lensBin, lens.priced).map((state) => explainYear(workspace.explicable, index, state)),
   };
 }
 

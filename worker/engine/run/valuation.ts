@@ -1,3 +1,4 @@
+import type { ExplainedYear } from '../explain/explain';
 import type { House } from '../house/house';
 import { rateOnLine } from '../layers/payoff';
 import type { Contributors } from '../measures/contributors';
@@ -23,6 +24,8 @@ export interface LayerValuation extends PayoffMeasures, Contributors {
   readonly impliedDeviationLoad: number | null;
   readonly split: PremiumSplit;
   readonly deciles: readonly Decile[];
+  /** The years in the middle of each tenth of the price, leanest first. */
+  readonly tellingYears: readonly ExplainedYear[];
   readonly selfCheckErrors: number | null;
 }
 
@@ -86,6 +89,7 @@ export function valuationOf(workspace: Workspace, found: Findings): Valuation {
       impliedDeviationLoad: measures.standardDeviation > 0 ? marginal.leanLoad / house.sureValue / measures.standardDeviation : null,
       split,
       deciles: deciles(bins, part.deciles),
+      tellingYears: part.tellingYears,
       selfCheckErrors: check.layers[l] ?? null,
     };
   });

@@ -8,6 +8,7 @@ import { doubles, type Allocate } from '../model/memory';
 import type { Prepared } from '../model/prepare';
 import { EngineInputError } from '../model/refusal';
 import { Scratch } from '../blocks/scratch';
+import type { Explicable } from '../explain/explain';
 import type { LayerPart } from './layer-task';
 
 /** Columns over all states, filled block by block; whole numbers of bins beside them. */
@@ -100,6 +101,11 @@ export class Workspace {
     if (this.parts.length === 0) throw new Error('the house is not known yet');
     this.joinedHouse ??= houseOf(this.prepared, this.memory.columns, this.parts, this.risklessRate);
     return this.joinedHouse;
+  }
+
+  /** What explaining one of its years needs. */
+  get explicable(): Explicable {
+    return { prepared: this.prepared, blocks: this.allBlocks(), house: this.house, bookLoss: this.memory.columns.bookLoss };
   }
 
   get leanBins(): LeanBins {
