@@ -1,9 +1,9 @@
 import type { DataSource } from 'typeorm';
 
 /** Tables whose rows the application may delete; from every other it can only read, add and change. */
-const DELETABLE = ['sessions', 'sign_in_attempts', 'quote_layers', 'outbox', 'captured_mails'];
+const DELETABLE = ['sessions', 'sign_in_attempts', 'quote_layers', 'outbox', 'captured_mails', 'run_blocks'];
 /** Rows of these are facts: added and read, never changed. */
-const APPEND_ONLY = ['audit_entries', 'book_versions', 'catalogue_event_names', 'catalogue_events', 'loss_rows', 'contract_layers', 'orders'];
+const APPEND_ONLY = ['audit_entries', 'book_versions', 'catalogue_event_names', 'catalogue_events', 'loss_rows', 'contract_layers', 'orders', 'run_blocks'];
 /** Not the application's to write at all. */
 const READ_ONLY = ['audit_seals', 'migrations'];
 

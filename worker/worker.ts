@@ -16,13 +16,15 @@ import { clearOutbox, outboxRepository, relayOutbox } from '../db/repositories/o
 import { peopleRepository } from '../db/repositories/people';
 import { programmesRepository } from '../db/repositories/programmes';
 import { quotesRepository } from '../db/repositories/quotes';
+import { runBlocks } from '../db/repositories/run-blocks';
 import { runDesk, runsRepository } from '../db/repositories/runs';
 import { zonesRepository } from '../db/repositories/zones';
 import { unitOfWork } from '../db/unit-of-work';
 import { ComputeAborted, computePool, THREAD_FILE } from './compute/pool';
 import { repricing, type RepricingDeps } from './jobs/reprice/reprice';
 import { GivenUp } from './jobs/run/port';
-import { runJob } from './jobs/run/run-job';
+import { attemptFrom, partFrom } from './jobs/run/parts';
+import { blocksJob, joinJob, runJob, waitingRuns, type RunJobDeps } from './jobs/run/run-job';
 import { sendMail } from './jobs/send-mail/send-mail';
 import { openPostOffice } from './mail/post-office';
 import { smtpSender } from './mail/smtp';
@@ -88,23 +90,28 @@ export async function openWorker(deps: WorkerDeps): Promise<OpenedWorker> {
   const mails = mailStore(dataSource);
   const desksOwn = repricing(repricingDeps(dataSource, notices));
 
+  const waiting = waitingRuns();
+  const aborted = (error: unknown): never => {
+    throw error instanceof ComputeAborted ? new GivenUp() : error;
+  };
+  const runDeps: RunJobDeps = {
+    desk,
+    blocks: runBlocks(dataSource),
+    read: (id) => readRunWork(dataSource, id),
+    value: (inputs, known, onProgress, signal) => computer.value(inputs, known, onProgress, signal).catch(aborted),
+    valueBlocks: (inputs, indexes, done, signal) => computer.blocks(inputs, indexes, done, signal).catch(aborted),
+    flow: (parent, children) => queue.addFlow(parent, children),
+    publish: (notice) => notices.publish(notice),
+    report,
+    mostAttempts: MOST_ATTEMPTS,
+    waiting,
+  };
+
   queue.work(
     {
-      'run.start': (runId) =>
-        runJob(
-          {
-            desk,
-            read: (id) => readRunWork(dataSource, id),
-            value: (inputs, onProgress, signal) =>
-              computer.value(inputs, onProgress, signal).catch((error: unknown) => {
-                throw error instanceof ComputeAborted ? new GivenUp() : error;
-              }),
-            publish: (notice) => notices.publish(notice),
-            report,
-            mostAttempts: MOST_ATTEMPTS,
-          },
-          runId,
-        ),
+      'run.start': (runId) => runJob(runDeps, runId),
+      'run.blocks': (part) => blocksJob(runDeps, partFrom(part)),
+      'run.join': (attempt) => joinJob(runDeps, attemptFrom(attempt)),
       'run.ended': (runId) => desksOwn.runEnded(runId),
       'book.moved': (version) => desksOwn.bookMoved(Number(version)),
       'mail.send': (mailId) => sendMail({ mails, sender, publicUrl: config.LEANYEAR_PUBLIC_URL, linkSecret: config.LINK_SECRET }, mailId),
@@ -140,6 +147,7 @@ export async function openWorker(deps: WorkerDeps): Promise<OpenedWorker> {
       // A run under way is given up: it is resumed after the start, and its fence keeps this attempt out.
       await computer.close();
       await queue.close();
+      await waiting.close((attempt) => desk.release(attempt));
       await sealing?.stop();
       await sealer?.destroy();
       sender.close();

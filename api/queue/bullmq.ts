@@ -1,9 +1,8 @@
-import { Queue, Worker, type ConnectionOptions, type Job } from 'bullmq';
+import { FlowProducer, Queue, Worker, type ConnectionOptions, type Job } from 'bullmq';
 import { z } from 'zod';
-import { OUTBOX_TOPICS } from '../domain/shared/outbox';
-import { FIRST_WAIT_MILLISECONDS, SIDE_BY_SIDE, TRIES, type Wake, type WakeQueue } from './port';
+import { FIRST_WAIT_MILLISECONDS, SIDE_BY_SIDE, TRIES, WAKE_TOPICS, laneOf, type Wake, type WakeQueue } from './port';
 
-const jobData = z.object({ topic: z.enum(OUTBOX_TOPICS), subjectId: z.string() });
+const jobData = z.object({ topic: z.enum(WAKE_TOPICS), subjectId: z.string() });
 
 /** A worker that was killed is noticed within about six seconds, and its job given to another. */
 const RECOVERY = { lockDuration: 5000, stalledInterval: 2000, maxStalledCount: 3 } as const;
@@ -37,8 +36,17 @@ async function soon<T>(work: Promise<T>): Promise<T> {
   }
 }
 
-/** Runs have a queue of their own, so that a long one holds up no mail. */
-const queueOf = (topic: Wake['topic']): 'runs' | 'acts' => (topic === 'run.start' ? 'runs' : 'acts');
+const dataOf = ({ topic, subjectId }: Wake): z.infer<typeof jobData> => ({ topic, subjectId });
+
+const optionsOf = ({ id, topic }: Wake) => ({
+  jobId: id,
+  attempts: TRIES[topic],
+  backoff: { type: 'exponential', delay: FIRST_WAIT_MILLISECONDS },
+  removeOnComplete: { age: KEEP_SECONDS, count: 1000 },
+  removeOnFail: { age: KEEP_SECONDS, count: 1000 },
+});
+
+const flowJob = (wake: Wake) => ({ name: wake.topic, queueName: laneOf(wake.topic), data: dataOf(wake), opts: optionsOf(wake) });
 
 /** The wake queue on Redis. */
 export function bullmqQueue(redisUrl: string, prefix = 'leanyear'): WakeQueue {
@@ -46,17 +54,21 @@ export function bullmqQueue(redisUrl: string, prefix = 'leanyear'): WakeQueue {
   const queues = { runs: new Queue('runs', options), acts: new Queue('acts', options) };
   // Connection trouble is met where a wake is handed over; without a listener it would end the process.
   for (const queue of Object.values(queues)) queue.on('error', () => undefined);
+  const flows = new FlowProducer(options);
+  flows.on('error', () => undefined);
   const workers: Worker[] = [];
   return {
-    async add({ id, topic, subjectId }) {
-      const options = {
-        jobId: id,
-        attempts: TRIES[topic],
-        backoff: { type: 'exponential', delay: FIRST_WAIT_MILLISECONDS },
-        removeOnComplete: { age: KEEP_SECONDS, count: 1000 },
-        removeOnFail: { age: KEEP_SECONDS, count: 1000 },
-      };
-      await soon(queues[queueOf(topic)].add(topic, { topic, subjectId }, options));
+    async add(wake) {
+      await soon(queues[laneOf(wake.topic)].add(wake.topic, dataOf(wake), optionsOf(wake)));
+    },
+    async addFlow(parent, children) {
+      await soon(
+        flows.add({
+          ...flowJob(parent),
+          // A part that fails for good must not hold up the rest for ever: who joins them does what is missing.
+          children: children.map((child) => ({ ...flowJob(child), opts: { ...optionsOf(child), ignoreDependencyOnFailure: true } })),
+        }),
+      );
     },
     async check() {
       await soon(queues.acts.getJobCounts('waiting'));
@@ -78,7 +90,7 @@ export function bullmqQueue(redisUrl: string, prefix = 'leanyear'): WakeQueue {
     },
     async close() {
       await Promise.all(workers.map((worker) => worker.close()));
-      await Promise.all(Object.values(queues).map((queue) => queue.close()));
+      await Promise.all([...Object.values(queues), flows].map((queue) => queue.close()));
     },
   };
 }

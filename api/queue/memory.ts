@@ -1,4 +1,4 @@
-import { FIRST_WAIT_MILLISECONDS, SIDE_BY_SIDE, TRIES, type Wake, type WakeHandlers, type WakeQueue } from './port';
+import { FIRST_WAIT_MILLISECONDS, SIDE_BY_SIDE, TRIES, laneOf, type Wake, type WakeHandlers, type WakeQueue } from './port';
 
 interface Lane {
   readonly waiting: { wake: Wake; attempt: number }[];
@@ -16,6 +16,8 @@ export function memoryQueue(firstWaitMilliseconds = FIRST_WAIT_MILLISECONDS): Wa
     acts: { waiting: [], running: 0, most: SIDE_BY_SIDE },
   };
   const seen = new Set<string>();
+  /** Of each part of a flow, what waits for it and for how many others. */
+  const parentOf = new Map<string, { readonly wake: Wake; children: number }>();
   const timers = new Set<NodeJS.Timeout>();
   const underWay = new Set<Promise<void>>();
   let handlers: WakeHandlers | null = null;
@@ -35,8 +37,22 @@ export function memoryQueue(firstWaitMilliseconds = FIRST_WAIT_MILLISECONDS): Wa
       await known[wake.topic](wake.subjectId);
     } catch (error) {
       report(error, wake);
-      if (attempt < TRIES[wake.topic] && !closed) again(lane, wake, attempt + 1);
+      if (closed) return;
+      if (attempt < TRIES[wake.topic]) {
+        again(lane, wake, attempt + 1);
+        return;
+      }
     }
+    const parent = parentOf.get(wake.id);
+    parentOf.delete(wake.id);
+    if (parent === undefined) return;
+    parent.children -= 1;
+    if (parent.children === 0) take(parent.wake);
+  };
+  const take = (wake: Wake): void => {
+    const lane = lanes[laneOf(wake.topic)];
+    lane.waiting.push({ wake, attempt: 1 });
+    turn(lane);
   };
   const turn = (lane: Lane): void => {
     while (handlers !== null && !closed && lane.running < lane.most) {
@@ -55,9 +71,16 @@ export function memoryQueue(firstWaitMilliseconds = FIRST_WAIT_MILLISECONDS): Wa
     add(wake) {
       if (seen.has(wake.id)) return Promise.resolve();
       seen.add(wake.id);
-      const lane = wake.topic === 'run.start' ? lanes.runs : lanes.acts;
-      lane.waiting.push({ wake, attempt: 1 });
-      turn(lane);
+      take(wake);
+      return Promise.resolve();
+    },
+    addFlow(wake, children) {
+      if (seen.has(wake.id)) return Promise.resolve();
+      const parent = { wake, children: children.length };
+      for (const { id } of [wake, ...children]) seen.add(id);
+      for (const child of children) parentOf.set(child.id, parent);
+      for (const child of children) take(child);
+      if (children.length === 0) take(wake);
       return Promise.resolve();
     },
     check: () => Promise.resolve(),

@@ -1,5 +1,4 @@
-import type { OutboxTopic } from '../domain/shared/outbox';
-import type { WakeHandlers, WakeQueue } from './port';
+import { WAKE_TOPICS, type Wake, type WakeHandlers, type WakeQueue, type WakeTopic } from './port';
 
 /** What every wake queue must do. `open` gives queues on the same store, fresh for each test. */
 export function wakeQueueContract(name: string, open: () => Promise<{ queue: WakeQueue; close(): Promise<void> }>): void {
@@ -8,9 +7,10 @@ export function wakeQueueContract(name: string, open: () => Promise<{ queue: Wak
     const heard: string[] = [];
     const troubles: string[] = [];
     const work = (over: Partial<WakeHandlers> = {}): void => {
-      const hear = (topic: OutboxTopic) => (id: string) => Promise.resolve(void heard.push(`${topic} ${id}`));
+      const hear = (topic: WakeTopic) => (id: string) => Promise.resolve(void heard.push(`${topic} ${id}`));
+      const all = Object.fromEntries(WAKE_TOPICS.map((topic) => [topic, hear(topic)])) as Record<WakeTopic, (id: string) => Promise<void>>;
       opened.queue.work(
-        { 'run.start': hear('run.start'), 'run.ended': hear('run.ended'), 'mail.send': hear('mail.send'), 'book.moved': hear('book.moved'), ...over },
+        { ...all, ...over },
         (error) => troubles.push(error instanceof Error ? error.message : String(error)),
       );
     };
@@ -57,6 +57,25 @@ export function wakeQueueContract(name: string, open: () => Promise<{ queue: Wak
       await opened.queue.add({ id: 'again', topic: 'mail.send', subjectId: '1' });
       await until(() => tries === 2);
       expect(troubles).toEqual(['the post is closed']);
+    });
+
+    it('gives the parent of a flow when every child has been done, one of them at the second try', async () => {
+      let failures = 0;
+      work({
+        'run.blocks': (id) => {
+          if (id === '2' && failures === 0) {
+            failures += 1;
+            return Promise.reject(new Error('out of memory'));
+          }
+          return Promise.resolve(void heard.push(`run.blocks ${id}`));
+        },
+      });
+      const children = ['1', '2', '3'].map((id): Wake => ({ id: `part-${id}`, topic: 'run.blocks', subjectId: id }));
+      await opened.queue.addFlow({ id: 'whole', topic: 'run.join', subjectId: 'all' }, children);
+      await opened.queue.addFlow({ id: 'whole', topic: 'run.join', subjectId: 'all' }, children);
+      await until(() => heard.includes('run.join all'));
+      expect([...heard.slice(0, -1)].sort()).toEqual(['run.blocks 1', 'run.blocks 2', 'run.blocks 3']);
+      expect(heard.at(-1)).toBe('run.join all');
     });
 
     it('runs one valuation at a time, and lets mail pass it', async () => {

@@ -8,6 +8,7 @@ import { RunPayoffRow, RunRow } from '../entities/runs';
 import { presentInputs } from '../read-models/run-inputs';
 import { managerOf } from '../unit-of-work';
 import { outboxRepository } from './outbox';
+import { dropBlocks } from './run-blocks';
 
 export function runsRepository(dataSource: DataSource): Runs {
   return {
@@ -100,8 +101,8 @@ export function runDesk(dataSource: DataSource): RunDesk {
     },
     async beat(attempt, progress) {
       const [rows]: [{ state: RunState }[], number] = await dataSource.query(
-        `UPDATE runs SET heartbeat_at = now(), progress = $3 WHERE ${mine} AND state IN ('running', 'cancelling') RETURNING state`,
-        [attempt.runId, attempt.number, JSON.stringify(progress)],
+        `UPDATE runs SET heartbeat_at = now(), progress = coalesce($3::jsonb, progress) WHERE ${mine} AND state IN ('running', 'cancelling') RETURNING state`,
+        [attempt.runId, attempt.number, progress === null ? null : JSON.stringify(progress)],
       );
       const state = rows[0]?.state;
       return state === undefined ? 'lost' : state === 'cancelling' ? 'cancel' : 'go on';
@@ -119,6 +120,7 @@ export function runDesk(dataSource: DataSource): RunDesk {
           const bytes = Buffer.from(values.buffer, values.byteOffset, values.byteLength);
           await manager.insert(RunPayoffRow, { runId: attempt.runId, position, series: name, bytes });
         }
+        await dropBlocks(manager, attempt.runId);
         await outboxRepository.put(manager as unknown as Transaction, 'run.ended', attempt.runId);
         return true;
       }),
@@ -150,7 +152,9 @@ async function endForsaken(dataSource: DataSource, runId: string): Promise<void>
        RETURNING id`,
       [runId, SILENT_SECONDS, `The worker died under this run ${MOST_DEATHS} times. Start it on a smaller grid; if that fails too, report it.`, MOST_DEATHS],
     );
-    if (rows.length === 1) await outboxRepository.put(manager as unknown as Transaction, 'run.ended', runId);
+    if (rows.length !== 1) return;
+    await dropBlocks(manager, runId);
+    await outboxRepository.put(manager as unknown as Transaction, 'run.ended', runId);
   });
 }
 
@@ -161,6 +165,7 @@ function end(dataSource: DataSource, attempt: Attempt, state: 'failed' | 'cancel
       [attempt.runId, attempt.number, state, words],
     );
     if (rows.length !== 1) return false;
+    await dropBlocks(manager, attempt.runId);
     await outboxRepository.put(manager as unknown as Transaction, 'run.ended', attempt.runId);
     return true;
   });

@@ -8,7 +8,7 @@ const THREAD_FILE = join(__dirname, '../../dist/server/worker/compute/compute-th
 export async function valuedByEngine(inputs: ValuationInputs): Promise<Valuation> {
   const pool = computePool(2, THREAD_FILE);
   try {
-    return await pool.value(inputs, () => undefined, new AbortController().signal);
+    return await pool.value(inputs, new Map(), () => undefined, new AbortController().signal);
   } finally {
     await pool.close();
   }

@@ -1,9 +1,10 @@
 import type { Attempt, RunDesk } from '../../api/domain/run/run';
+import { runBlocks } from '../../db/repositories/run-blocks';
 import { runDesk } from '../../db/repositories/runs';
 import { EngineInputError } from '../../worker/engine';
 import { readRunWork } from '../../db/read-models/run-work';
 import { GivenUp } from '../../worker/jobs/run/port';
-import { runJob, type RunJobDeps } from '../../worker/jobs/run/run-job';
+import { runJob, waitingRuns, type RunJobDeps } from '../../worker/jobs/run/run-job';
 import { openRunBench, type RunBench } from '../support/run-desk';
 
 const PROGRESS = { done: 1, total: 2, doing: 'something' };
@@ -28,7 +29,11 @@ describe('attempts at a run', () => {
   const deps = (over: Partial<RunJobDeps>): RunJobDeps => ({
     desk,
     read: (id) => readRunWork(bench.dataSource, id),
+    blocks: runBlocks(bench.dataSource),
     value: () => Promise.reject(new Error('not asked for here')),
+    valueBlocks: () => Promise.reject(new Error('not asked for here')),
+    flow: () => Promise.reject(new Error('not asked for here')),
+    waiting: waitingRuns(),
     publish: () => Promise.resolve(),
     report: () => 'an-id',
     mostAttempts: 3,

@@ -117,6 +117,42 @@ describe('runs through a worker', () => {
     await redis.drop();
   }, 90_000);
 
+  it.each([
+    ['in memory', () => Promise.resolve({ queue: memoryQueue(50), drop: () => Promise.resolve() })],
+    [
+      'on Redis',
+      async () => {
+        const redis = await createTestRedis();
+        return { queue: bullmqQueue(redis.url), drop: () => redis.drop() };
+      },
+    ],
+  ])('values a large run in parts, and does no block twice after a worker has stopped: %s', async (_where, openQueue) => {
+    const blocks = async (id: string): Promise<{ block: number; xmin: string }[]> =>
+      (await bench.api.owner.query<{ block: number; xmin: string }>('SELECT block, xmin FROM run_blocks WHERE run_id = $1 ORDER BY block', [id])).rows;
+    const programmeId = await bench.programme();
+    const first = await openQueue();
+    await open(first.queue);
+    const calm = await succeeded(await bench.run(LONG, programmeId));
+    const id = await bench.run(LONG, programmeId);
+    await until(id, ({ progress }) => progress.done >= 10);
+    await stop();
+    await first.drop();
+    expect(await bench.read(id)).toMatchObject({ state: 'queued', attempt: 1 });
+    const kept = await blocks(id);
+    expect(kept.length).toBeGreaterThanOrEqual(8);
+    const second = await openQueue();
+    await open(second.queue);
+    await until(id, ({ progress }) => progress.done > kept.length + 5);
+    const later = await blocks(id);
+    expect(later.filter(({ block }) => kept.some((one) => one.block === block))).toEqual(kept);
+    const resumed = await succeeded(id);
+    expect(resumed).toMatchObject({ attempt: 2, resultHash: calm.resultHash });
+    expect(await blocks(id)).toEqual([]);
+    expect(await bench.counts(id)).toMatchObject({ ends: 1, series: 2 });
+    await stop();
+    await second.drop();
+  }, 120_000);
+
   it('finds a run whose wake was lost, within ten seconds', async () => {
     const id = await bench.run();
     // As after a Redis that lost everything it had taken over.

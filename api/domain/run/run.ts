@@ -85,8 +85,8 @@ export interface RunDesk {
    * fails here, and a cancel whose worker has died is carried out.
    */
   begin(runId: string): Promise<Attempt | null>;
-  /** Says that the attempt lives and how far it is; answers what is asked of it. */
-  beat(attempt: Attempt, progress: Progress): Promise<'go on' | 'cancel' | 'lost'>;
+  /** Says that the attempt lives and how far it is, null: as far as was said last; answers what is asked of it. */
+  beat(attempt: Attempt, progress: Progress | null): Promise<'go on' | 'cancel' | 'lost'>;
   /** Stores the result with the yearly payoffs and wakes what follows, in one transaction. False: the attempt was overtaken. */
   succeed(attempt: Attempt, result: { json: unknown; hash: string; series: readonly { name: string; values: Float64Array }[] }): Promise<boolean>;
   fail(attempt: Attempt, words: string): Promise<void>;
@@ -96,4 +96,13 @@ export interface RunDesk {
   release(attempt: Attempt): Promise<void>;
   /** Runs that wait without a wake, or whose worker has been silent for too long. */
   forsaken(): Promise<{ runId: string; attempt: number }[]>;
+}
+
+/** Blocks of a large run that are done: kept until it ends, so that no crash makes them be done again. */
+export interface RunBlocks {
+  /** Numbers of the blocks that are kept. */
+  kept(runId: string): Promise<number[]>;
+  read(runId: string): Promise<{ index: number; bytes: Buffer }[]>;
+  /** Keeps a block; nothing where the attempt was overtaken or the block is there. */
+  keep(attempt: Attempt, index: number, bytes: Uint8Array): Promise<void>;
 }

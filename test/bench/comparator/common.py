@@ -155,7 +155,7 @@ class Clock:
 
 def lens_ends(states):
     """Bins of the lean lens, even in the logarithm of the share of states: shares from and to, widths, last ranks."""
-    step = math.exp(math.log(10) / 12)
+    step = 10 ** (1 / 12)
     bins, before, share = [], 0, 1e-4 * step
     while before < states:
         to_share = 1.0 if share > 1 / math.sqrt(step) else share

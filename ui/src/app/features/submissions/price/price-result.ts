@@ -6,12 +6,13 @@ import { Amount } from '../../../shared/amount/amount';
 import { FigurePipe, SharePipe } from '../../../shared/format/pipes';
 import { LeanLens } from '../../../shared/lean-lens/lean-lens';
 import { SplitWaterfall } from '../../../shared/split-waterfall/split-waterfall';
+import { TellingYears } from './telling-years';
 
 /** What a run says: prices a column a layer, the lens, the premium taken apart, and the measures behind them. */
 @Component({
   selector: 'ly-price-result',
   changeDetection: ChangeDetectionStrategy.OnPush,
-  imports: [Amount, FigurePipe, LeanLens, MatButtonModule, SharePipe, SplitWaterfall],
+  imports: [Amount, FigurePipe, LeanLens, MatButtonModule, SharePipe, SplitWaterfall, TellingYears],
   templateUrl: './price-result.html',
   styleUrl: './price-result.scss',
 })
