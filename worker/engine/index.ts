@@ -3,6 +3,7 @@ export { EngineInputError } from './model/refusal';
 export * from './model/inputs';
 export { prepare, type Prepared } from './model/prepare';
 export type { Allocate } from './model/memory';
+export { priceAgain } from './run/again';
 export { course, takeFound, type Step } from './run/course';
 export { perform, type Found, type Task } from './run/tasks';
 export type { LayerValuation, ProgrammeValuation, Valuation } from './run/valuation';

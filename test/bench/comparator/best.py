@@ -9,7 +9,7 @@ import numpy as np
 from scipy import special
 
 import common
-from quantiles import RowQuantiles
+from quantiles import BETA, BetaQuantiles, RowQuantiles
 
 CHUNK = 1 << 15
 """Occurrences worked on together, so that their columns stay in the nearer caches."""
@@ -46,60 +46,70 @@ class Alias:
             np.copyto(part, self.other.take(part), where=u >= self.chance.take(part))
 
 
-def poisson(rng, mean, size):
-    if mean > 500:
-        return rng.poisson(mean, size)
-    most = int(mean + 12 * math.sqrt(mean) + 40)
-    numbers = np.arange(most)
-    counts = np.empty(size, dtype=np.intp)
-    Alias(np.exp(numbers * math.log(mean) - mean - special.gammaln(numbers + 1))).draw(rng, counts)
-    return counts
+class Counts:
+    """Yearly numbers of occurrences, Poisson."""
+
+    def __init__(self, mean):
+        self.mean, self.alias = mean, None
+        if mean <= 500:
+            numbers = np.arange(int(mean + 12 * math.sqrt(mean) + 40))
+            self.alias = Alias(np.exp(numbers * math.log(mean) - mean - special.gammaln(numbers + 1)))
+
+    def draw(self, rng, size):
+        if self.alias is None:
+            return rng.poisson(self.mean, size)
+        counts = np.empty(size, dtype=np.intp)
+        self.alias.draw(rng, counts)
+        return counts
 
 
-def draw(case, rng):
-    """Occurrences in order of state and day, with their common scores. State, day and event are sorted as one integer."""
-    counts = poisson(rng, case.rate.sum(), case.states)
-    state = np.repeat(np.arange(case.states), counts)
-    n, events = len(state), len(case.rate)
-    event_bits = max((events - 1).bit_length(), 1)
-    if event_bits + DAY_BITS + (case.states - 1).bit_length() > 63:
-        raise SystemExit("more states and events than this program was written for")
-    season = (case.season_day - 1 - (case.inception_day - 1)) % common.DAYS
-    season_part = np.where(np.isnan(season), -1, season * DAY_PARTS).astype(np.intp)
-    key = np.empty(n, dtype=np.intp)
-    Alias(case.rate).draw(rng, key)
-    for low in range(0, n, CHUNK):
-        part = key[low : low + CHUNK]
-        day = season_part.take(part)
-        any_day = rng.random(len(part))
+class Drawing:
+    """Draws the occurrences of a few thousand states, in order of state and day: the two and the event as one integer."""
+
+    def __init__(self, case):
+        self.counts, self.events = Counts(case.rate.sum()), Alias(case.rate)
+        self.event_bits = max((len(case.rate) - 1).bit_length(), 1)
+        self.state_bits = DAY_BITS + self.event_bits
+        if self.state_bits + (case.states - 1).bit_length() > 63:
+            raise SystemExit("more states and events than this program was written for")
+        season = (case.season_day - case.inception_day) % common.DAYS
+        self.season = np.where(np.isnan(season), -1, season * DAY_PARTS).astype(np.intp)
+
+    def draw(self, rng, first, last):
+        """The occurrences' keys, events and common scores."""
+        key = np.repeat(np.arange(first, last), self.counts.draw(rng, last - first))
+        event = np.empty(len(key), dtype=np.intp)
+        self.events.draw(rng, event)
+        day = self.season.take(event)
+        any_day = rng.random(len(key))
         any_day *= common.DAYS * DAY_PARTS
         np.copyto(day, any_day, where=day < 0, casting="unsafe")
-        day += state[low : low + CHUNK] << DAY_BITS
-        day <<= event_bits
-        part |= day
-    key.sort(kind="stable")
-    event, day = np.empty(n, dtype=np.int32), np.empty(n)
-    for low in range(0, n, CHUNK):
-        part = key[low : low + CHUNK]
-        np.bitwise_and(part, (1 << event_bits) - 1, out=event[low : low + CHUNK], casting="unsafe")
-        part >>= event_bits
-        part &= (1 << DAY_BITS) - 1
-        np.multiply(part, 1 / DAY_PARTS, out=day[low : low + CHUNK])
-    return common.Occurrences(state, event, day, rng.standard_normal(n))
+        key <<= DAY_BITS
+        key += day
+        key <<= self.event_bits
+        key += event
+        # Nearly in order already, which the stable sort makes use of.
+        key.sort(kind="stable")
+        np.bitwise_and(key, (1 << self.event_bits) - 1, out=event)
+        return key, event, rng.standard_normal(len(key))
+
+    def day(self, key):
+        return ((key >> self.event_bits) & ((1 << DAY_BITS) - 1)) * (1 / DAY_PARTS)
 
 
 class TableLosses:
-    """Draws a table's losses, a chunk at a time."""
+    """Draws a table's losses in a chunk of occurrences."""
 
-    def __init__(self, table, least):
-        """`least`: losses at or below it need not be told from 0; None: all are needed."""
-        self.quantiles = RowQuantiles(table)
+    def __init__(self, table, laws, betas, least):
+        """`least`: losses at or below it are not needed; None: all are."""
+        self.quantiles = RowQuantiles(table, laws, betas)
         self.row_of_event = np.full(table.events, -1)
         self.row_of_event[table.event] = np.arange(len(table.event))
         self.common, self.own = np.sqrt(table.common_share), np.sqrt(1 - table.common_share)
         self.threshold = None if least is None else self.quantiles.score_not_above(least)
 
-    def chunk(self, event, score, rng, loss):
+    def draw(self, event, score, rng):
+        """Places of the occurrences that may lose more than the least, and their losses."""
         row = self.row_of_event.take(event)
         hit = np.flatnonzero(row >= 0)
         row = row.take(hit)
@@ -111,18 +121,65 @@ class TableLosses:
         if self.threshold is not None:
             over = np.flatnonzero(both > self.threshold.take(row))
             hit, row, both = hit.take(over), row.take(over), both.take(over)
-        loss[hit] = self.quantiles.losses(row, both)
+        return hit, self.quantiles.losses(row, both)
 
 
-def draw_losses(case, occurrences, rng):
-    """The programme's losses all, the book's where they can pass its lowest attachment."""
-    n = len(occurrences.event)
-    tables = TableLosses(case.programme, None), TableLosses(case.book, min(layer.attachment for layer in case.book_layers))
-    occurrences.programme_loss, occurrences.book_loss = np.zeros(n), np.zeros(n)
-    for low in range(0, n, CHUNK):
-        part = slice(low, low + CHUNK)
-        for table, loss in zip(tables, (occurrences.programme_loss, occurrences.book_loss)):
-            table.chunk(occurrences.event[part], occurrences.score[part], rng, loss[part])
+class Losses:
+    """Occurrences with a loss, in order of state and day: columns that are filled from the front."""
+
+    def __init__(self, room):
+        self.count = 0
+        self.state, self.event = np.empty(room, dtype=np.int32), np.empty(room, dtype=np.int32)
+        self.day, self.loss = np.empty(room), np.empty(room)
+
+    def append(self, state, event, day, loss):
+        to = self.count + len(loss)
+        if to > len(self.loss):
+            raise SystemExit("more occurrences than were to be expected")
+        part = slice(self.count, to)
+        self.state[part], self.event[part], self.day[part], self.loss[part] = state, event, day, loss
+        self.count = to
+
+    def close(self):
+        for name in ("state", "event", "day", "loss"):
+            setattr(self, name, getattr(self, name)[: self.count])
+        return self
+
+    @classmethod
+    def given(cls, occurrences, loss, reach):
+        """Of occurrences drawn elsewhere those that lose more than `reach`."""
+        over = np.flatnonzero(loss > reach)
+        losses = cls(len(over))
+        losses.append(*(column.take(over) for column in (occurrences.state, occurrences.event, occurrences.day, loss)))
+        return losses
+
+
+def draw_losses(case, rng, clock):
+    """The programme's losses all, the book's where they pass its lowest attachment; a few thousand states at a time, so
+    that their columns stay in the nearer caches."""
+    drawing = Drawing(case)
+    clock.phase("draw")
+    reach = min(layer.attachment for layer in case.book_layers)
+    tables, laws = (case.programme, case.book), (case.programme.laws(), case.book.laws())
+    betas = BetaQuantiles(*(np.concatenate([law[shape][law[0] == BETA] for law in laws]) for shape in (1, 2)))
+    draws = [TableLosses(table, law, betas, least) for table, law, least in zip(tables, laws, (None, reach))]
+    expected = [case.states * case.rate[table.event].sum() for table in tables]
+    # The room that is not used is never touched, and so takes no memory.
+    programme, book = (Losses(int(n + 12 * math.sqrt(n) + 100)) for n in expected)
+    clock.phase("losses")
+    step = max(int(CHUNK / case.rate.sum()), 1)
+    for first in range(0, case.states, step):
+        key, event, score = drawing.draw(rng, first, min(first + step, case.states))
+        clock.phase("draw")
+        for losses, table, least in zip((programme, book), draws, (0, reach)):
+            hit, loss = table.draw(event, score, rng)
+            if table.threshold is not None:
+                over = np.flatnonzero(loss > least)
+                hit, loss = hit.take(over), loss.take(over)
+            own = key.take(hit)
+            losses.append(own >> drawing.state_bits, event.take(hit), drawing.day(own), loss)
+        clock.phase("losses")
+    return programme.close(), book.close()
 
 
 class Years:
@@ -178,15 +235,11 @@ def all_years(layers, state, loss):
     return found
 
 
-def book_losses(case, occurrences):
+def book_losses(case, losses):
     """The states in which the book costs or brings anything, and what, net of reinstatement premiums."""
     basis = case.basis
-    reach = min(layer.attachment for layer in case.book_layers)
-    over = np.flatnonzero(occurrences.book_loss > reach)
-    state = occurrences.state.take(over)
-    years = all_years(case.book_layers, state, occurrences.book_loss.take(over))
     total = np.zeros(case.states)
-    for layer, year in zip(case.book_layers, years):
+    for layer, year in zip(case.book_layers, all_years(case.book_layers, losses.state, losses.loss)):
         total[year.state] += layer.line * (year.paid * (1 + basis["lossAdjustment"]) - layer.premium * (1 - basis["taxes"]) * year.back)
     states = np.flatnonzero(total)
     return states, total.take(states)
@@ -651,29 +704,24 @@ def lens(house, lean, layers, sums):
     return bins
 
 
-def mean_with_error(figures):
-    mean = float(figures.mean())
-    return mean, error_of_mean(figures, mean, len(figures))[1]
-
-
 class Valuation:
     """What is known once the losses are, whatever the programme's terms."""
 
-    def __init__(self, case, occurrences, house):
-        self.case, self.occurrences, self.house = case, occurrences, house
+    def __init__(self, case, losses, house):
+        self.case, self.losses, self.house = case, losses, house
         self.lean = None
 
     def measure_once(self):
         """Measures that no term of the programme moves."""
-        occurrences, states = self.occurrences, self.case.states
+        states, losses = self.case.states, self.losses
         self.lean = LeanOrder(self.house)
-        loss = occurrences.programme_loss
-        total = np.bincount(occurrences.state, loss, states)
-        self.ground = mean_with_error(total)
-        hit = np.flatnonzero(loss > 0)
-        state, loss = occurrences.state.take(hit), loss.take(hit)
-        starts = np.flatnonzero(np.diff(state, prepend=-1))
-        largest = np.maximum.reduceat(loss, starts) if len(starts) > 0 else loss
+        new = np.empty(len(losses.state), dtype=bool)
+        new[:1] = True
+        np.not_equal(losses.state[1:], losses.state[:-1], out=new[1:])
+        starts = np.flatnonzero(new)
+        largest, total = (f.reduceat(losses.loss, starts) if len(starts) > 0 else losses.loss for f in (np.maximum, np.add))
+        mean = float(total.sum()) / states
+        self.ground = mean, error_of_mean(total, mean, states)[1]
         self.exceedance = {
             "occurrence": exceedance(largest, states, common.RETURN_PERIODS),
             "aggregate": exceedance(total, states, common.RETURN_PERIODS),
@@ -690,11 +738,9 @@ class Valuation:
         return exceedance(loss, states, common.HOUSE_PERIODS)
 
     def price(self, layers, clock):
-        case, house, occurrences = self.case, self.house, self.occurrences
+        case, house, losses = self.case, self.house, self.losses
         states, basis = case.states, case.basis
-        over = np.flatnonzero(occurrences.programme_loss > min(layer.attachment for layer in layers))
-        event = occurrences.event.take(over)
-        years = all_years(layers, occurrences.state.take(over), occurrences.programme_loss.take(over))
+        years = all_years(layers, losses.state, losses.loss)
         clock.phase("layers")
         deals = [Deal(case, layer, year, house, len(layers)) for layer, year in zip(layers, years)]
         for deal in deals:
@@ -707,7 +753,7 @@ class Valuation:
         clock.phase("premiums")
         if self.lean is None:
             self.measure_once()
-        reports, sums = zip(*(layer_report(case, deal, self.lean, event) for deal in deals))
+        reports, sums = zip(*(layer_report(case, deal, self.lean, losses.event) for deal in deals))
         total = together.added(deal.years.paid for deal in deals)
         figures, errors = payoff_measures(total, together.slope, together.slope * total, house)
         done = np.zeros(len(total), dtype=np.int32)
@@ -745,16 +791,15 @@ class Valuation:
 
 def price(case, drawn, clock):
     """The vectorised valuation made as quick as NumPy lets it be."""
-    occurrences = drawn
-    if occurrences is None:
-        rng = np.random.Generator(np.random.SFC64(case.seed))
-        occurrences = draw(case, rng)
-        clock.phase("draw")
-        draw_losses(case, occurrences, rng)
+    if drawn is None:
+        programme, book = draw_losses(case, np.random.Generator(np.random.SFC64(case.seed)), clock)
+    else:
+        reach = min(layer.attachment for layer in case.book_layers)
+        programme, book = Losses.given(drawn, drawn.programme_loss, 0), Losses.given(drawn, drawn.book_loss, reach)
         clock.phase("losses")
-    states, loss = book_losses(case, occurrences)
+    states, loss = book_losses(case, book)
     clock.phase("book")
-    valuation = Valuation(case, occurrences, House(case, states, loss))
+    valuation = Valuation(case, programme, House(case, states, loss))
     clock.phase("house")
     return valuation.price(case.layers, clock), valuation.price
 

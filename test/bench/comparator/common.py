@@ -205,8 +205,10 @@ def exact_means(case, layers):
         next_below = below - np.exp(a_in * np.log(x) + b_in * np.log1p(-x) - log_front[within])
         return total + share.sum() - share[within].sum() + share[within] @ next_below + rate[beta][within] @ (d * (1 - below))
 
-    known = {d: limited(d) for x in layers for d in (x.attachment, x.attachment + x.limit)}
-    return float(rate @ table.mean), [float(known[x.attachment + x.limit] - known[x.attachment]) for x in layers]
+    # Where one layer ends the next begins, but for the last digit.
+    ends = [(float(f"{x.attachment:.14g}"), float(f"{x.attachment + x.limit:.14g}")) for x in layers]
+    known = {d: limited(d) for d in {d for pair in ends for d in pair}}
+    return float(rate @ table.mean), [float(known[end] - known[start]) for start, end in ends]
 
 
 def in_errors(simulated, exact, error):

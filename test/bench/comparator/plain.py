@@ -6,7 +6,7 @@
 import math
 
 import numpy as np
-from scipy import special
+from scipy import special, stats
 
 import common
 
@@ -39,7 +39,8 @@ def table_loss(table, occurrences, rng):
     found = table.mean[row]
     log, beta = np.flatnonzero(kind == 1), np.flatnonzero(kind == 2)
     found[log] = np.exp(p[log] + q[log] * score[log])
-    found[beta] = table.exposed[row[beta]] * special.betaincinv(p[beta], q[beta], special.ndtr(score[beta]))
+    # Not special.betaincinv, which SciPy 1.10 gets wrong for large shapes.
+    found[beta] = table.exposed[row[beta]] * stats.beta.ppf(special.ndtr(score[beta]), p[beta], q[beta])
     loss = np.zeros(len(occurrences.event))
     loss[hit] = found
     return loss

@@ -94,33 +94,48 @@ def spline_at(coefficients, place):
     return ((1 - t) ** 3 * c0 + (3 * t**3 - 6 * t**2 + 4) * c1 + (-3 * t**3 + 3 * t**2 + 3 * t + 1) * c2 + t**3 * c3) / 6
 
 
-def beta_coefficients(a, b):
-    """Coefficients of rows of beta laws, and which of them may be used: tried on a sample at random scores."""
-    # Small shapes bend sharply and large ones are SciPy's slowest; both are rare.
-    fit = (np.minimum(a, b) >= 0.1) & (np.maximum(a, b) >= 0.5) & (np.maximum(a, b) <= 1e7)
-    coefficients = np.zeros((len(a), COEFFICIENTS))
-    rows = np.flatnonzero(fit)
-    if len(rows) == 0:
+class BetaQuantiles:
+    """B-spline coefficients of the logits of beta laws with shapes in a box, tried on a sample at random scores."""
+
+    def __init__(self, a, b):
+        rows = np.flatnonzero(self.fits(a, b))
+        self.surface = None
+        if len(rows) == 0:
+            return
+        a, b = a[rows], b[rows]
+        rng = np.random.default_rng(1)
+        sample = np.unique([*rng.integers(0, len(a), 400), a.argmin(), a.argmax(), b.argmin(), b.argmax()])
+        score = rng.uniform(-RANGE, RANGE, len(sample))
+        exact = logit_of_quantile(a[sample], b[sample], score)
+        for nodes in (14, 18, 24, 32):
+            surface = LogitSurface(a, b, nodes)
+            found = spline_at(surface.coefficients(a[sample], b[sample]), (score + RANGE) / STEP)
+            if np.abs(found - exact).max() <= LARGEST_ERROR:
+                self.surface = surface
+                return
+
+    @staticmethod
+    def fits(a, b):
+        # Small shapes bend sharply and large ones are SciPy's slowest; both are rare.
+        return (np.minimum(a, b) >= 0.1) & (np.maximum(a, b) >= 0.5) & (np.maximum(a, b) <= 1e7)
+
+    def coefficients(self, a, b):
+        """Coefficients of rows, and which of them may be used."""
+        coefficients = np.zeros((len(a), COEFFICIENTS))
+        if self.surface is None:
+            return coefficients, np.zeros(len(a), dtype=bool)
+        fit = self.fits(a, b)
+        coefficients[fit] = self.surface.coefficients(a[fit], b[fit])
         return coefficients, fit
-    rng = np.random.default_rng(1)
-    sample = np.unique(np.concatenate([rng.choice(rows, min(len(rows), 500)), *(rows[[x[rows].argmin(), x[rows].argmax()]] for x in (a, b))]))
-    score = rng.uniform(-RANGE, RANGE, len(sample))
-    exact = logit_of_quantile(a[sample], b[sample], score)
-    for nodes in (14, 18, 24, 32):
-        surface = LogitSurface(a[rows], b[rows], nodes)
-        error = np.abs(spline_at(surface.coefficients(a[sample], b[sample]), (score + RANGE) / STEP) - exact).max()
-        if error <= LARGEST_ERROR:
-            coefficients[rows] = surface.coefficients(a[rows], b[rows])
-            return coefficients, fit
-    return coefficients, np.zeros(len(a), dtype=bool)
 
 
 class RowQuantiles:
     """Losses of a table's rows at normal scores: size / (offset + exp(−spline)), which is a beta's quantile at offset 1, a
     lognormal's at offset 0 with a straight spline, and certain with a spline so high that its exponential vanishes."""
 
-    def __init__(self, table):
-        kind, self.p, self.q = table.laws()
+    def __init__(self, table, laws, betas):
+        """`laws` of the table; `betas` for shapes in whose box those of the table are."""
+        kind, self.p, self.q = laws
         rows = len(kind)
         self.exposed = table.exposed
         self.coefficients = np.empty((rows, COEFFICIENTS))
@@ -130,7 +145,7 @@ class RowQuantiles:
         steps = np.arange(-1, COEFFICIENTS - 1) * STEP - RANGE
         self.coefficients[log] = self.p[log, None] + self.q[log, None] * steps
         self.size[log], self.offset[log] = 1, 0
-        self.coefficients[beta], fit = beta_coefficients(self.p[beta], self.q[beta])
+        self.coefficients[beta], fit = betas.coefficients(self.p[beta], self.q[beta])
         self.size[beta] = table.exposed[beta]
         self.beta, self.alone = kind == BETA, np.zeros(rows, dtype=bool)
         self.alone[beta[~fit]] = True

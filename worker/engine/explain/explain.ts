@@ -82,8 +82,10 @@ export function explainYear({ prepared, blocks, house, bookLoss }: Explicable, l
   year.begin();
   for (let i = 0; i < (losses?.count ?? 0); i += 1) {
     if (losses?.state[i] !== state - index * BLOCK_STATES) continue;
-    const event = losses.event[i] ?? 0;
     const [loss, day] = [losses.loss[i] ?? 0, losses.day[i] ?? 0];
+    // Those that no layer of the programme counts are left out.
+    if (loss < prepared.programme.reach) continue;
+    const event = losses.event[i] ?? 0;
     const takes = loss >= year.reach && (allowed === null || allowed[event] === 1);
     const [paid, reinstated] = [year.payoff, year.reinstatement];
     const counted = takes ? year.take(loss, day) : 0;

@@ -1,4 +1,4 @@
-import type { InuringCover, LayerForm } from '../model/layer';
+import type { InuringCover, LayerForm, LayerTerms } from '../model/layer';
 import { occurrenceRecovery } from './payoff';
 
 /** What an inuring cover recovers of a loss, given what it has paid this year. */
@@ -24,4 +24,9 @@ export function reachOf(form: LayerForm, attachment: number, quotaShareKept: num
   if (inured) return 0;
   const least = form.kind === 'excess' ? attachment : form.kind === 'aggregate' ? form.threshold : form.qualifying;
   return (least / quotaShareKept) * (1 - 1e-12);
+}
+
+/** Least ground-up loss that any of the layers can count. */
+export function reachOfLayers(layers: readonly LayerTerms[]): number {
+  return Math.min(...layers.map((layer) => reachOf(layer.form ?? { kind: 'excess' }, layer.attachment, layer.quotaShareKept ?? 1, (layer.inuringCovers ?? []).length > 0)));
 }

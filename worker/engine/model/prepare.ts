@@ -1,5 +1,5 @@
 import { kindOfRow, severityOfRow } from '../losses/laws';
-import { reachOf } from '../layers/counting';
+import { reachOfLayers } from '../layers/counting';
 import { streamKey } from '../random/keys';
 import { catalogueKeys, type KeyedCatalogue } from '../random/occurrences';
 import { checkBasis, checkCatalogue, checkDeductions, checkGrid, checkLayer } from './check';
@@ -120,9 +120,7 @@ class Numbering {
       checkLayer(layer);
       checkDeductions(layer, basis);
     }
-    const reach = Math.min(
-      ...layers.map((layer) => reachOf(layer.form ?? { kind: 'excess' }, layer.attachment, layer.quotaShareKept ?? 1, (layer.inuringCovers ?? []).length > 0)),
-    );
+    const reach = reachOfLayers(layers);
     // Losses below every layer need not be drawn, unless several tables are summed before the layers see them.
     const summed = new Set(tables.map((table) => table.catalogueLineage)).size < tables.length;
     return {

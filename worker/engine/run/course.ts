@@ -1,12 +1,14 @@
-import type { ExactMeans } from '../measures/self-check';
 import { WAVES, type Found, type Task } from './tasks';
-import { valuationOf, type Valuation } from './valuation';
+import { valuationOf, type Curves, type Valuation } from './valuation';
 import type { Workspace } from './workspace';
 
-/** Tasks that need nothing of each other. */
+/** Tasks that need nothing of each other, and the run that they are of. */
 export interface Step {
   readonly tasks: readonly Task[];
+  readonly workspace: Workspace;
 }
+
+type Wave = Generator<Step, readonly Found[], readonly Found[]>;
 
 /** Takes into a workspace what a wave's tasks found, in the tasks' order. Every thread of a run does it alike. */
 export function takeFound(workspace: Workspace, found: readonly Found[]): void {
@@ -20,45 +22,48 @@ export function takeFound(workspace: Workspace, found: readonly Found[]): void {
   }
 }
 
+function* wave(workspace: Workspace, tasks: readonly Task[]): Wave {
+  const found = yield { tasks, workspace };
+  takeFound(workspace, found);
+  return found;
+}
+
+function only<K extends Found['kind']>(found: readonly Found[], kind: K): Extract<Found, { kind: K }>[] {
+  return found.filter((one): one is Extract<Found, { kind: K }> => one.kind === kind);
+}
+
 /**
  * The course of a run: yields a wave of tasks, is given what they found in the tasks' order, and returns the valuation.
  * Who does the tasks, and in which order, leaves no trace: sums are joined by block and task, never by time.
  */
 export function* course(workspace: Workspace): Generator<Step, Valuation, readonly Found[]> {
-  const wave = function* (tasks: readonly Task[]): Generator<Step, readonly Found[], readonly Found[]> {
-    const found = yield { tasks };
-    takeFound(workspace, found);
-    return found;
-  };
-  yield* wave(WAVES.laws(workspace));
-  yield* wave(WAVES.blocks(workspace));
-  return yield* pricing(workspace, wave);
+  yield* wave(workspace, WAVES.laws(workspace));
+  yield* wave(workspace, WAVES.blocks(workspace));
+  yield* wave(workspace, WAVES.rate());
+  yield* wave(workspace, WAVES.house(workspace));
+  yield* wave(workspace, WAVES.lean());
+  return yield* layersAgain(workspace);
 }
 
-/** The part of a run that follows its blocks. */
-export function* pricing(
-  workspace: Workspace,
-  wave: (tasks: readonly Task[]) => Generator<Step, readonly Found[], readonly Found[]>,
-): Generator<Step, Valuation, readonly Found[]> {
-  yield* wave(WAVES.rate());
-  yield* wave(WAVES.house(workspace));
-  yield* wave(WAVES.lean());
-  yield* wave(WAVES.layers(workspace));
-  const whole = yield* wave(WAVES.whole(workspace));
-  const of = <K extends Found['kind']>(kind: K): Extract<Found, { kind: K }>[] => whole.filter((one): one is Extract<Found, { kind: K }> => one.kind === kind);
-  const [programme] = of('programme');
-  const [occurrence, aggregate] = of('curve');
-  const [tailBefore] = of('tail');
-  if (programme === undefined || occurrence === undefined || aggregate === undefined || tailBefore === undefined) throw new Error('a task of the run did not answer');
-  const after = yield* wave(WAVES.after(programme.programme.parts));
-  const tailAfter = after.find((one) => one.kind === 'tail');
+/** The part of a run that values its layers on a house that is known. */
+export function* layersAgain(workspace: Workspace): Generator<Step, Valuation, readonly Found[]> {
+  yield* wave(workspace, WAVES.layers(workspace));
+  const whole = yield* wave(workspace, [...WAVES.programme(workspace), ...(workspace.curves === null ? WAVES.curves() : [])]);
+  const [programme] = only(whole, 'programme');
+  if (programme === undefined) throw new Error('the programme of the run was not valued');
+  workspace.curves ??= curvesOf(whole);
+  const after = yield* wave(workspace, WAVES.after(programme.programme.parts));
   return valuationOf(workspace, {
+    ...workspace.curves,
     programme: programme.programme,
-    occurrence: occurrence.points,
-    aggregate: aggregate.points,
-    groundUp: aggregate.mean,
-    tailBefore: tailBefore.points,
-    tailAfter: tailAfter?.points ?? [],
-    means: of('check').map(({ means }): ExactMeans => means),
+    tailAfter: only(after, 'tail')[0]?.points ?? [],
+    means: only(whole, 'check').map(({ means }) => means),
   });
+}
+
+function curvesOf(found: readonly Found[]): Curves {
+  const [occurrence, aggregate] = only(found, 'curve');
+  const [tailBefore] = only(found, 'tail');
+  if (occurrence === undefined || aggregate === undefined || tailBefore === undefined) throw new Error('a curve of the run was not made');
+  return { occurrence: occurrence.points, aggregate: aggregate.points, groundUp: aggregate.mean, tailBefore: tailBefore.points };
 }

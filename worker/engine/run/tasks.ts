@@ -83,9 +83,6 @@ function programmeRows(workspace: Workspace): number {
   return workspace.prepared.programme.tables.reduce((rows, table) => rows + table.slot.length, 0);
 }
 
-/** Told of each wave: does its tasks, in any order and place, and answers what they found in the tasks' order. */
-export type Perform<Answer> = (tasks: readonly Task[]) => Answer;
-
 /** A run as waves of tasks; each wave needs what the ones before it found. */
 export const WAVES = {
   laws: (workspace: Workspace): Task[] => chunks(0, workspace.prepared.rows).map((chunk) => ({ kind: 'laws', ...chunk })),
@@ -94,12 +91,7 @@ export const WAVES = {
   house: (workspace: Workspace): Task[] => Array.from({ length: workspace.prepared.blocks }, (_unused, index): Task => ({ kind: 'house', index })),
   lean: (): Task[] => [{ kind: 'lean' }],
   layers: (workspace: Workspace): Task[] => workspace.prepared.programme.layers.map((_layer, index): Task => ({ kind: 'layer', index })),
-  whole: (workspace: Workspace): Task[] => [
-    { kind: 'programme' },
-    { kind: 'occurrence curve' },
-    { kind: 'aggregate curve' },
-    { kind: 'house tail before' },
-    ...chunks(0, programmeRows(workspace)).map((chunk): Task => ({ kind: 'check', ...chunk })),
-  ],
+  programme: (workspace: Workspace): Task[] => [{ kind: 'programme' }, ...chunks(0, programmeRows(workspace)).map((chunk): Task => ({ kind: 'check', ...chunk }))],
+  curves: (): Task[] => [{ kind: 'occurrence curve' }, { kind: 'aggregate curve' }, { kind: 'house tail before' }],
   after: (premiums: readonly number[]): Task[] => [{ kind: 'house tail after', premiums }],
 } as const;

@@ -52,13 +52,18 @@ export interface Valuation {
   readonly series: { readonly capital: Float64Array; readonly payoffs: readonly Float64Array[] };
 }
 
-/** What a run's tasks found beside its blocks, house and layers. */
-export interface Findings {
-  readonly programme: ProgrammePart;
+/** What does not depend on the layers. */
+export interface Curves {
   readonly occurrence: readonly TailPoint[];
   readonly aggregate: readonly TailPoint[];
+  /** Yearly mean loss of the programme, ground-up. */
   readonly groundUp: Estimate;
   readonly tailBefore: readonly TailPoint[];
+}
+
+/** What a run's tasks found beside its blocks, house and layers. */
+export interface Findings extends Curves {
+  readonly programme: ProgrammePart;
   readonly tailAfter: readonly TailPoint[];
   readonly means: readonly ExactMeans[];
 }

@@ -9,6 +9,9 @@ import type { Prepared } from '../model/prepare';
 import { EngineInputError } from '../model/refusal';
 import { Scratch } from '../blocks/scratch';
 import type { Explicable } from '../explain/explain';
+import { reachOfLayers } from '../layers/counting';
+import type { LayerTerms } from '../model/layer';
+import type { Curves } from './valuation';
 import type { LayerPart } from './layer-task';
 
 /** Columns over all states, filled block by block; whole numbers of bins beside them. */
@@ -52,6 +55,8 @@ export class Workspace {
   private parts: readonly HousePart[] = [];
   private joinedHouse: House | null = null;
   bins: LeanBins | null = null;
+  /** What does not depend on the layers: ground-up exceedance, and the house's tail without the programme. */
+  curves: Curves | null = null;
   private ownScratch: Scratch | null = null;
 
   constructor(
@@ -64,6 +69,22 @@ export class Workspace {
   get scratch(): Scratch {
     this.ownScratch ??= new Scratch(this.prepared.events);
     return this.ownScratch;
+  }
+
+  /** The same run with other layers: what was drawn and the house stay, the layers are to be valued. */
+  withLayers(layers: readonly LayerTerms[]): Workspace {
+    const { prepared } = this;
+    const { programme, inputs } = prepared;
+    const changed = new Workspace(
+      { ...prepared, inputs: { ...inputs, programme: { ...inputs.programme, layers } }, programme: { ...programme, layers, premiums: layers.map(() => 0), reach: reachOfLayers(layers) } },
+      this.memory,
+      this.allocate,
+    );
+    changed.blocks.push(...this.blocks);
+    changed.takeHouse(this.parts, this.risklessRate);
+    changed.bins = this.bins;
+    changed.curves = this.curves;
+    return changed;
   }
 
   /** Takes in a block, valued here, by another thread or before a crash. */
