@@ -548,19 +548,21 @@ def exceedance(figures, states, periods):
     """Value and tail value at each return period. `figures` may leave out states, if these have 0 and none has less."""
     ranks = common.tail_ranks(states, periods)
     absent = states - len(figures)
-    lowest = min((min(rank) for rank in ranks.values()), default=0)
-    if lowest < absent:
+    if min((min(three) for three in ranks.values()), default=absent) < absent:
         figures, absent = np.concatenate([np.zeros(absent), figures]), 0
-    wanted = sorted({rank - absent for three in ranks.values() for rank in three})
-    ordered = np.partition(figures, wanted) if wanted else figures
+    ordered = figures.copy()
     points = []
     for years in periods:
         if years not in ranks:
             points.append(common.no_tail_point(years))
             continue
-        value, low, high = (ordered[rank - absent] for rank in ranks[years])
-        over = ordered[ranks[years][0] - absent + 1 :] - value
+        # Each period's ranks are sought among the figures that the one before left above its lowest.
+        at = [rank - absent - (len(figures) - len(ordered)) for rank in ranks[years]]
+        ordered.partition(sorted(at))
+        value, low, high = (ordered[rank] for rank in at)
+        over = ordered[at[0] + 1 :] - value
         points.append(common.tail_point(years, states, value, low, high, float(over.sum()), float(over @ over)))
+        ordered = ordered[min(at) :]
     return points
 
 

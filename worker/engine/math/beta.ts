@@ -3,7 +3,7 @@ import exp from '@stdlib/math-base-special-exp';
 import log1p from '@stdlib/math-base-special-log1p';
 import { ln } from './ln';
 
-const TINY = 1e-300;
+const LARGE = 1e100;
 const MOST_TERMS = 10_000;
 
 /** A beta law with what every evaluation of it needs again. Shapes a, b above 0. */
@@ -18,35 +18,36 @@ export function betaLaw(a: number, b: number): BetaLaw {
 }
 
 /**
- * Continued fraction of the incomplete beta function, by Lentz's method in the form of Press, Teukolsky, Vetterling and
- * Flannery, Numerical Recipes, section 6.4. Converges quickly for x < (a + 1)/(a + b + 2).
+ * Continued fraction of the incomplete beta function, 1/(1 + d₁/(1 + d₂/(1 + …))) with the coefficients of M. Abramowitz,
+ * I. A. Stegun, 26.5.8, by the forward recurrence of its convergents: two divisions a round, where Lentz's method has six.
+ * Converges quickly for x < (a + 1)/(a + b + 2).
  */
 function continuedFraction(x: number, a: number, b: number): number {
-  let c = 1;
-  let d = 1 - ((a + b) * x) / (a + 1);
-  if (d > -TINY && d < TINY) d = TINY;
-  d = 1 / d;
-  let h = d;
+  // Numerator and denominator of the last two convergents of 1 + d₁/(1 + …).
+  let [numerator, denominator] = [1, 1];
+  let [before, beforeDenominator] = [1, 0];
+  const first = (-(a + b) * x) / (a + 1);
+  [before, numerator] = [numerator, numerator + first * before];
+  [beforeDenominator, denominator] = [denominator, denominator + first * beforeDenominator];
   for (let m = 1; m <= MOST_TERMS; m += 1) {
-    const twice = 2 * m;
-    const even = (m * (b - m) * x) / ((a + twice - 1) * (a + twice));
-    d = 1 + even * d;
-    if (d > -TINY && d < TINY) d = TINY;
-    c = 1 + even / c;
-    if (c > -TINY && c < TINY) c = TINY;
-    d = 1 / d;
-    h *= d * c;
-    const odd = (-(a + m) * (a + b + m) * x) / ((a + twice) * (a + twice + 1));
-    d = 1 + odd * d;
-    if (d > -TINY && d < TINY) d = TINY;
-    c = 1 + odd / c;
-    if (c > -TINY && c < TINY) c = TINY;
-    d = 1 / d;
-    const step = d * c;
-    h *= step;
-    if (step - 1 < 3e-16 && step - 1 > -3e-16) return h;
+    const twice = a + 2 * m;
+    const even = (m * (b - m) * x) / ((twice - 1) * twice);
+    const odd = (-(a + m) * (a + b + m) * x) / (twice * (twice + 1));
+    before = numerator + even * before;
+    beforeDenominator = denominator + even * beforeDenominator;
+    numerator = before + odd * numerator;
+    denominator = beforeDenominator + odd * denominator;
+    // The last two convergents agree: denominators' quotients are compared without dividing.
+    const gap = denominator * before - beforeDenominator * numerator;
+    if (Math.abs(gap) <= 3e-16 * Math.abs(denominator * before)) break;
+    if (numerator > LARGE || numerator < -LARGE) {
+      numerator /= LARGE;
+      denominator /= LARGE;
+      before /= LARGE;
+      beforeDenominator /= LARGE;
+    }
   }
-  return h;
+  return denominator / numerator;
 }
 
 /** ln x and ln(1 − x) of x = 1/(1 + exp(−y)), both without cancellation. */
