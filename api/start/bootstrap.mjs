@@ -15,6 +15,7 @@ const DEBIAN = {
   start: { required: ['postgresql'], wished: ['redis-server'] },
   test: { required: ['postgresql', 'redis-server', 'chromium', 'python3-scipy', 'curl'], wished: [] },
   prove: { required: ['debootstrap', 'git'], wished: [] },
+  bench: { required: ['python3-scipy', 'gcc', 'libc6-dev'], wished: [] },
 };
 
 const root = fileURLToPath(new URL('../..', import.meta.url)).replace(/\/$/, '');
@@ -57,7 +58,7 @@ async function prepare(/** @type {import('./context.js').BootstrapContext} */ co
 }
 
 async function main() {
-  if (!(command in DEBIAN)) throw new Refusal('Say what to do: npm start, npm test or npm run prove.');
+  if (!(command in DEBIAN)) throw new Refusal('Say what to do: npm start, npm test, npm run bench or npm run prove.');
   checkNodeVersion(process.versions.node);
   const base = { root, dataDir: prepareDataFolder(root), args, say, signal: stop.signal };
   const context = { ...base, buildScreens: () => ensureBuild(base, BUILDS.ui), acquireLock, holderOf };

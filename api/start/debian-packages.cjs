@@ -27,6 +27,8 @@ const PRESENT = /** @type {Record<string, () => boolean>} */ ({
   debootstrap: () => onPath('debootstrap'),
   git: () => onPath('git'),
   curl: () => onPath('curl'),
+  gcc: () => onPath('cc'),
+  'libc6-dev': () => existsSync('/usr/include/stdio.h'),
 });
 
 /**

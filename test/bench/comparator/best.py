@@ -11,7 +11,7 @@ from scipy import special
 import common
 from quantiles import BETA, BetaQuantiles, RowQuantiles
 
-CHUNK = 1 << 15
+CHUNK = 1 << 16
 """Occurrences worked on together, so that their columns stay in the nearer caches."""
 DAY_BITS = 24
 DAY_PARTS = 1 << 15

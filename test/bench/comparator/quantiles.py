@@ -3,7 +3,7 @@
 The logit of a beta quantile, less its mean and over its deviation, is a smooth and bounded function of the two logarithms
 of the shapes and of the score. So it is worked out by SciPy at Chebyshev nodes of the shapes and equal steps of the score,
 turned into coefficients of a cubic B-spline in the score, and these are read off at every row's shapes by one product of
-matrices. A row is then 39 numbers, and a loss is four of them, a cubic and an exponential. Laws on whose sample the table
+matrices. A row is then 33 numbers, and a loss is four of them, a cubic and an exponential. Laws on whose sample the table
 errs by more than it should, and scores beyond it, are left to SciPy, one by one.
 
 Sources: L. N. Trefethen, Approximation Theory and Approximation Practice (2013), for interpolation at Chebyshev nodes;
@@ -12,11 +12,11 @@ C. de Boor, A Practical Guide to Splines (1978), for B-splines at equal steps.
 import numpy as np
 from scipy import special, stats
 
-STEP = 0.25
+STEP = 0.3
 RANGE = 4.5
 KNOTS = round(2 * RANGE / STEP) + 1
 COEFFICIENTS = KNOTS + 2
-LARGEST_ERROR = 3e-5
+LARGEST_ERROR = 5e-5
 """Of a logit, and so of the quantile and of its complement, relative."""
 CERTAIN, LOGNORMAL, BETA = range(3)
 

@@ -53,7 +53,11 @@ function payingOf({ capital }: House): Uint32Array {
 }
 
 /** Sums over the idle states one by one, without any series; compensated, so that they are exact to doubles. */
-function direct(house: House, paying: Uint32Array, c: number): { gain: number; slope: number; squares: number } {
+function direct(
+  house: House,
+  paying: Uint32Array,
+  c: number,
+): { gain: number; slope: number; squares: number } {
   const pays = new Set(paying);
   const sums = { gain: [0, 0], slope: [0, 0], squares: [0, 0] };
   // T. J. Dekker (1971), A floating-point technique for extending the available precision: the error of a sum.
@@ -78,53 +82,60 @@ function direct(house: House, paying: Uint32Array, c: number): { gain: number; s
 const GAMMAS = [0, 0.5, 1, 6, 15] as const;
 const CHANGES = [1e-9, -1e-9, 1e-6, 1e-4, -1e-3, 4e-3, 0.02, -0.02, 0.09, 0.3, -0.3, 2] as const;
 
-describe.each(GAMMAS.flatMap((gamma) => Object.keys(SHAPES).map((shape) => [gamma, shape as keyof typeof SHAPES] as const)))(
-  'sums over idle states, risk aversion %p, %s',
-  (gamma, shape) => {
-    const house = houseOf(gamma, SHAPES[shape]);
+describe.each(
+  GAMMAS.flatMap((gamma) =>
+    Object.keys(SHAPES).map((shape) => [gamma, shape as keyof typeof SHAPES] as const),
+  ),
+)('sums over idle states, risk aversion %p, %s', (gamma, shape) => {
+  const house = houseOf(gamma, SHAPES[shape]);
 
-    it.each([
-      ['few paying states', payingOf(house)],
-      ['none paying', new Uint32Array(0)],
-    ])('are the direct sums: %s', (_name, paying) => {
-      const idle = new IdleStates(house, paying);
-      for (const c of CHANGES) {
-        const expected = direct(house, paying, c);
-        const { gain, slope, squares } = idle.gain(c);
-        const off = { gain: Math.abs(gain / expected.gain - 1), slope: Math.abs(slope / expected.slope - 1) };
-        expect({ c, ...off, fine: off.gain < 1e-12 && off.slope < 1e-12 }).toEqual({ c, ...off, fine: true });
-        // Squares serve standard errors only: to third order in γ·c/k.
-        const squaresOff = Math.abs(squares / expected.squares - 1);
-        const bound = 1e-11 + 2 * (((gamma + 2) * Math.abs(c)) / NEAR_BELOW) ** 3;
-        expect({ c, squaresOff, fine: squaresOff < bound }).toEqual({ c, squaresOff, fine: true });
-      }
-    });
+  it.each([
+    ['few paying states', payingOf(house)],
+    ['none paying', new Uint32Array(0)],
+  ])('are the direct sums: %s', (_name, paying) => {
+    const idle = new IdleStates(house, paying);
+    for (const c of CHANGES) {
+      const expected = direct(house, paying, c);
+      const { gain, slope, squares } = idle.gain(c);
+      const off = { gain: Math.abs(gain / expected.gain - 1), slope: Math.abs(slope / expected.slope - 1) };
+      expect({ c, ...off, fine: off.gain < 1e-12 && off.slope < 1e-12 }).toEqual({ c, ...off, fine: true });
+      // Squares serve standard errors only: to third order in γ·c/k.
+      const squaresOff = Math.abs(squares / expected.squares - 1);
+      const bound = 1e-11 + 2 * (((gamma + 2) * Math.abs(c)) / NEAR_BELOW) ** 3;
+      expect({ c, squaresOff, fine: squaresOff < bound }).toEqual({ c, squaresOff, fine: true });
+    }
+  });
 
-    it('of no change are nothing gained, and the slopes as they are', () => {
-      const idle = new IdleStates(house, new Uint32Array(0));
-      const { gain, slope, squares } = idle.gain(0);
-      expect([gain, squares].map(Math.abs)).toEqual([0, 0]);
-      expect(Math.abs(slope / house.slopeSum - 1)).toBeLessThan(1e-13);
-    });
+  it('of no change are nothing gained, and the slopes as they are', () => {
+    const idle = new IdleStates(house, new Uint32Array(0));
+    const { gain, slope, squares } = idle.gain(0);
+    expect([gain, squares].map(Math.abs)).toEqual([0, 0]);
+    expect(Math.abs(slope / house.slopeSum - 1)).toBeLessThan(1e-13);
+  });
 
-    it('are nothing where every state pays', () => {
-      const idle = new IdleStates(house, Uint32Array.from(house.capital.keys()));
-      for (const c of [1e-4, -1e-3, 0.5]) {
-        const whole = direct(house, new Uint32Array(0), c);
-        const { gain, slope } = idle.gain(c);
-        expect({ c, gain: Math.abs(gain / whole.gain) < 1e-13, slope: Math.abs(slope / whole.slope) < 1e-13 }).toEqual({
-          c,
-          gain: true,
-          slope: true,
-        });
-      }
-    });
-  },
-);
+  it('are nothing where every state pays', () => {
+    const idle = new IdleStates(house, Uint32Array.from(house.capital.keys()));
+    for (const c of [1e-4, -1e-3, 0.5]) {
+      const whole = direct(house, new Uint32Array(0), c);
+      const { gain, slope } = idle.gain(c);
+      expect({
+        c,
+        gain: Math.abs(gain / whole.gain) < 1e-13,
+        slope: Math.abs(slope / whole.slope) < 1e-13,
+      }).toEqual({
+        c,
+        gain: true,
+        slope: true,
+      });
+    }
+  });
+});
 
 describe('the series', () => {
   it('is used for small changes and left for large ones, for every risk aversion', () => {
-    const widest = GAMMAS.map((gamma) => CHANGES.filter((c) => seriesHolds(gamma, Math.abs(c) / NEAR_BELOW)).length);
+    const widest = GAMMAS.map(
+      (gamma) => CHANGES.filter((c) => seriesHolds(gamma, Math.abs(c) / NEAR_BELOW)).length,
+    );
     // Both ways are met above at every risk aversion; the more averse, the sooner it is left.
     expect(Math.min(...widest)).toBeGreaterThan(3);
     expect(Math.max(...widest)).toBeLessThan(CHANGES.length);

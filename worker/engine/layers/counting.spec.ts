@@ -93,7 +93,9 @@ describe('the least ground-up loss that can count', () => {
       expect({ threshold, kept, counts: countedLoss(loss * kept, form, 1, 0, 0) > 0 }).toMatchObject({
         counts: true,
       });
-      expect({ threshold, kept, within: reachOf(form, 0, kept, false) <= loss }).toMatchObject({ within: true });
+      expect({ threshold, kept, within: reachOf(form, 0, kept, false) <= loss }).toMatchObject({
+        within: true,
+      });
     }
   });
 });

@@ -173,7 +173,11 @@ describe('reinstatement pro rata as to time (own arithmetic)', () => {
 });
 
 describe('an aggregate excess through a year (own arithmetic)', () => {
-  const aggregate = (counts: 'in full' | 'over it', cap: number | null, over: Partial<LayerTerms> = {}): LayerTerms =>
+  const aggregate = (
+    counts: 'in full' | 'over it',
+    cap: number | null,
+    over: Partial<LayerTerms> = {},
+  ): LayerTerms =>
     layer(10, 8, { form: { kind: 'aggregate', threshold: 3, counts, cap }, reinstatements: [], ...over });
 
   it.each([
@@ -303,7 +307,13 @@ describe('covers that inure to a layer (own arithmetic)', () => {
 
 describe('filters by peril and region', () => {
   const seed = '0123456789abcdef';
-  const keyed = (lineage: string, firstEvent: number, perils: string[], perilIndex: number[], regionIndex: number[]) => {
+  const keyed = (
+    lineage: string,
+    firstEvent: number,
+    perils: string[],
+    perilIndex: number[],
+    regionIndex: number[],
+  ) => {
     const catalogue = {
       ...inventedCatalogue(perilIndex.length, 1, lineage),
       perils,
@@ -331,7 +341,9 @@ describe('filters by peril and region', () => {
     ['both', { perils: ['quake'], regions: ['south'] }, [0, 0, 0, 1, 1, 0]],
     ['what no catalogue has', { perils: ['hail'] }, [0, 0, 0, 0, 0, 0]],
     ['an empty list', { regions: [] }, [0, 0, 0, 0, 0, 0]],
-  ])('cover the events of both catalogues: %s', (_name, over, expected) => expect(allowed(over)).toEqual(expected));
+  ])('cover the events of both catalogues: %s', (_name, over, expected) =>
+    expect(allowed(over)).toEqual(expected),
+  );
 
   /** Year 3: wind 14, quake 30, wind 13; year 7: quake 30 alone. */
   const losses: BlockLosses = {

@@ -20,7 +20,8 @@ function bySorting(figures: readonly number[], years: number): { value: number; 
   return { value, tailValue: value + (years * excess) / figures.length };
 }
 
-const close = (a: number | null, b: number, scale: number): boolean => a !== null && Math.abs(a - b) <= 1e-12 * scale;
+const close = (a: number | null, b: number, scale: number): boolean =>
+  a !== null && Math.abs(a - b) <= 1e-12 * scale;
 
 describe('exceedance', () => {
   it('takes the (S/N + 1)-th largest, and the mean of the worst S/N years (own arithmetic)', () => {
@@ -53,7 +54,10 @@ describe('exceedance', () => {
           const expected = bySorting(figures, years);
           expect((value ?? Number.NaN) + 0).toBe(expected.value + 0);
           const scale = Math.max(...figures.map(Math.abs), 1) * years;
-          expect({ years, close: close(tailValue, expected.tailValue, scale) }).toEqual({ years, close: true });
+          expect({ years, close: close(tailValue, expected.tailValue, scale) }).toEqual({
+            years,
+            close: true,
+          });
           expect(tailValue).toBeGreaterThanOrEqual(value ?? Infinity);
           expect(valueError).toBeGreaterThanOrEqual(0);
           expect(tailValueError).toBeGreaterThanOrEqual(0);
@@ -69,7 +73,11 @@ describe('exceedance', () => {
     // 30 years of 100 and 970 of 7: the worst tenth is 30 of 100 and 70 of 7.
     const figures = Float64Array.from({ length: 1000 }, (_unused, i) => (i % 100 < 3 ? 100 : 7));
     const [ten, twenty, fifty] = exceedance(figures, [10, 20, 50]);
-    expect(ten).toMatchObject({ value: 7, valueError: 0, tailValue: expect.closeTo(0.3 * 100 + 0.7 * 7, 10) as number });
+    expect(ten).toMatchObject({
+      value: 7,
+      valueError: 0,
+      tailValue: expect.closeTo(0.3 * 100 + 0.7 * 7, 10) as number,
+    });
     expect(twenty).toMatchObject({ value: 7, tailValue: expect.closeTo(0.6 * 100 + 0.4 * 7, 10) as number });
     expect(fifty).toMatchObject({ value: 100, tailValue: 100, tailValueError: 0 });
   });
@@ -87,7 +95,10 @@ describe('exceedance', () => {
     [9999, RETURN_PERIODS.slice(0, -1)],
     [19, []],
   ])('of %p years says nothing where fewer than ten lie beyond: told %p', (states, told) => {
-    const points = exceedance(Float64Array.from({ length: states }, (_unused, i) => i), RETURN_PERIODS);
+    const points = exceedance(
+      Float64Array.from({ length: states }, (_unused, i) => i),
+      RETURN_PERIODS,
+    );
     expect(points.filter(({ value }) => value !== null).map(({ years }) => years)).toEqual(told);
     expect(points.filter(({ tailValue }) => tailValue !== null).map(({ years }) => years)).toEqual(told);
   });
@@ -98,7 +109,10 @@ describe('exceedance', () => {
     const next = uniforms(20_240);
     /** A Pareto law with tail index 3: heavy, with a variance. */
     const samples = Array.from({ length: SAMPLES }, () =>
-      exceedance(Float64Array.from({ length: 4000 }, () => next() ** (-1 / 3)), YEARS),
+      exceedance(
+        Float64Array.from({ length: 4000 }, () => next() ** (-1 / 3)),
+        YEARS,
+      ),
     );
     const over = (p: number, of: 'value' | 'valueError' | 'tailValue' | 'tailValueError') => {
       const found = samples.map((points) => points[p]?.[of] ?? Number.NaN);
@@ -107,19 +121,33 @@ describe('exceedance', () => {
       return { mean, deviation: Math.sqrt(variance) };
     };
 
-    it.each(YEARS.map((years, p) => [years, p] as const))('tells the scatter of its figures at 1 in %p', (years, p) => {
-      // The scatter's own error over 400 samples is 3.5%, more for the heavy tail beyond; rounding of ranks adds to it.
-      const value = over(p, 'valueError').mean / over(p, 'value').deviation;
-      expect({ years, value, plausible: value > 0.8 && value < 1.25 }).toEqual({ years, value, plausible: true });
-      const tail = over(p, 'tailValueError').mean / over(p, 'tailValue').deviation;
-      expect({ years, tail, plausible: tail > 0.75 && tail < 1.25 }).toEqual({ years, tail, plausible: true });
-    });
+    it.each(YEARS.map((years, p) => [years, p] as const))(
+      'tells the scatter of its figures at 1 in %p',
+      (years, p) => {
+        // The scatter's own error over 400 samples is 3.5%, more for the heavy tail beyond; rounding of ranks adds to it.
+        const value = over(p, 'valueError').mean / over(p, 'value').deviation;
+        expect({ years, value, plausible: value > 0.8 && value < 1.25 }).toEqual({
+          years,
+          value,
+          plausible: true,
+        });
+        const tail = over(p, 'tailValueError').mean / over(p, 'tailValue').deviation;
+        expect({ years, tail, plausible: tail > 0.75 && tail < 1.25 }).toEqual({
+          years,
+          tail,
+          plausible: true,
+        });
+      },
+    );
 
-    it.each(YEARS.map((years, p) => [years, p] as const))('finds the law’s own figures at 1 in %p', (years, p) => {
-      const exact = years ** (1 / 3);
-      // Of a Pareto law with tail index 3 the tail value is 3/2 of the value (own algebra).
-      expect(Math.abs(over(p, 'value').mean / exact - 1)).toBeLessThan(0.01);
-      expect(Math.abs(over(p, 'tailValue').mean / (1.5 * exact) - 1)).toBeLessThan(0.015);
-    });
+    it.each(YEARS.map((years, p) => [years, p] as const))(
+      'finds the law’s own figures at 1 in %p',
+      (years, p) => {
+        const exact = years ** (1 / 3);
+        // Of a Pareto law with tail index 3 the tail value is 3/2 of the value (own algebra).
+        expect(Math.abs(over(p, 'value').mean / exact - 1)).toBeLessThan(0.01);
+        expect(Math.abs(over(p, 'tailValue').mean / (1.5 * exact) - 1)).toBeLessThan(0.015);
+      },
+    );
   });
 });

@@ -32,7 +32,9 @@ function check(capital: Float64Array): void {
   const rank = ranks(capital);
   const edges = lensEdges(states);
   const tenthOf = (r: number): number =>
-    Array.from({ length: DECILES }, (_unused, d) => Math.floor(((d + 1) * states) / DECILES)).findIndex((end) => r < end);
+    Array.from({ length: DECILES }, (_unused, d) => Math.floor(((d + 1) * states) / DECILES)).findIndex(
+      (end) => r < end,
+    );
   expect([...decile]).toEqual(rank.map(tenthOf));
   expect([...lensBin]).toEqual(rank.map((r) => edges.findIndex(({ to }) => r < to)));
   edges.forEach(({ from, to }, b) => {
@@ -50,18 +52,21 @@ function check(capital: Float64Array): void {
 }
 
 describe('the edges of the lean lens', () => {
-  it.each([1000, 1001, 9999, 16_384, 500_000, 10_000_000])('of %p states join without gap or overlap and end with all', (states) => {
-    const edges = lensEdges(states);
-    expect(edges[0]).toMatchObject({ from: 0 });
-    expect(edges[edges.length - 1]).toMatchObject({ to: states, shareTo: 1 });
-    edges.forEach(({ from, to, shareFrom, shareTo, width }, b) => {
-      expect(to).toBeGreaterThan(from);
-      expect(Math.floor(shareTo * states)).toBe(to);
-      expect(Math.abs(width - Math.log(shareTo / shareFrom))).toBeLessThan(1e-12);
-      if (b === 0) return;
-      expect({ from, shareFrom }).toEqual({ from: edges[b - 1]?.to, shareFrom: edges[b - 1]?.shareTo });
-    });
-  });
+  it.each([1000, 1001, 9999, 16_384, 500_000, 10_000_000])(
+    'of %p states join without gap or overlap and end with all',
+    (states) => {
+      const edges = lensEdges(states);
+      expect(edges[0]).toMatchObject({ from: 0 });
+      expect(edges[edges.length - 1]).toMatchObject({ to: states, shareTo: 1 });
+      edges.forEach(({ from, to, shareFrom, shareTo, width }, b) => {
+        expect(to).toBeGreaterThan(from);
+        expect(Math.floor(shareTo * states)).toBe(to);
+        expect(Math.abs(width - Math.log(shareTo / shareFrom))).toBeLessThan(1e-12);
+        if (b === 0) return;
+        expect({ from, shareFrom }).toEqual({ from: edges[b - 1]?.to, shareFrom: edges[b - 1]?.shareTo });
+      });
+    },
+  );
 
   it('stand even in the logarithm of the share, twelve a decade, where states are many', () => {
     const widths = lensEdges(10_000_000).map(({ width }) => width);
@@ -79,7 +84,9 @@ describe('tenths and bins of the lean order', () => {
       { weight: 1, arbitrary: fc.constantFrom(0, -0, 0.25, 1.0500000000000003) },
     );
     fc.assert(
-      fc.property(fc.array(capital, { minLength: 1000, maxLength: 1700, size: 'max' }), (ks) => check(Float64Array.from(ks))),
+      fc.property(fc.array(capital, { minLength: 1000, maxLength: 1700, size: 'max' }), (ks) =>
+        check(Float64Array.from(ks)),
+      ),
       { seed: 11, numRuns: 12 },
     );
   });
@@ -91,5 +98,7 @@ describe('tenths and bins of the lean order', () => {
     ['already in order', (i: number) => 0.5 + i * 1e-4],
     ['in the opposite order', (i: number) => 0.5 - i * 1e-4],
     ['a level across several edges', (i: number) => (i < 40 ? 0.1 : i < 700 ? 0.6 : 1 + i * 1e-6)],
-  ])('are exact where capital is %s', (_name, of) => check(Float64Array.from({ length: 1234 }, (_unused, i) => of(i))));
+  ])('are exact where capital is %s', (_name, of) =>
+    check(Float64Array.from({ length: 1234 }, (_unused, i) => of(i))),
+  );
 });
