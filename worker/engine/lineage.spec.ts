@@ -215,7 +215,7 @@ describe('two loss tables on a catalogue', () => {
   });
 });
 
-const BLOCKS = 2;
+const BLOCKS = 1;
 /** Number of a catalogue's occurrences in each state, by the class of their event; events of class −1 are left out. */
 function countsBy(
   catalogue: Catalogue,

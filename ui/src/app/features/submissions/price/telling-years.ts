@@ -9,7 +9,7 @@ import { FigurePipe, SharePipe } from '../../../shared/format/pipes';
   changeDetection: ChangeDetectionStrategy.OnPush,
   imports: [Amount, FigurePipe, SharePipe],
   templateUrl: './telling-years.html',
-  styleUrl: './price-result.scss',
+  styleUrl: './telling-years.scss',
 })
 export class TellingYears {
   readonly layer = input.required<LayerResult>();
