@@ -23,6 +23,7 @@ import { unitOfWork } from '../db/unit-of-work';
 import { ComputeAborted, computePool, THREAD_FILE } from './compute/pool';
 import { repricing, type RepricingDeps } from './jobs/reprice/reprice';
 import { GivenUp } from './jobs/run/port';
+import { rememberingLast } from './jobs/run/remember';
 import { attemptFrom, partFrom } from './jobs/run/parts';
 import { blocksJob, joinJob, runJob, waitingRuns, type RunJobDeps } from './jobs/run/run-job';
 import { sendMail } from './jobs/send-mail/send-mail';
@@ -97,7 +98,7 @@ export async function openWorker(deps: WorkerDeps): Promise<OpenedWorker> {
   const runDeps: RunJobDeps = {
     desk,
     blocks: runBlocks(dataSource),
-    read: (id) => readRunWork(dataSource, id),
+    read: rememberingLast((id) => readRunWork(dataSource, id)),
     value: (inputs, known, onProgress, signal) => computer.value(inputs, known, onProgress, signal).catch(aborted),
     valueBlocks: (inputs, indexes, done, signal) => computer.blocks(inputs, indexes, done, signal).catch(aborted),
     flow: (parent, children) => queue.addFlow(parent, children),

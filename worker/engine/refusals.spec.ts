@@ -1,4 +1,13 @@
-import { EngineInputError, prepare, value, type Catalogue, type HouseBasis, type LayerTerms, type LossTable, type ValuationInputs } from '.';
+import {
+  EngineInputError,
+  prepare,
+  value,
+  type Catalogue,
+  type HouseBasis,
+  type LayerTerms,
+  type LossTable,
+  type ValuationInputs,
+} from '.';
 import { severityOf } from './losses/severity';
 import type { OutsideDomain } from './model/refusal';
 import { inventedInputs, inventedLayer } from './testing/invented';
@@ -6,7 +15,8 @@ import { inventedInputs, inventedLayer } from './testing/invented';
 const good = inventedInputs({ events: 60, states: 1000, contracts: 1, layers: 1 });
 const [goodCatalogue] = good.catalogues;
 const [goodTable] = good.programme.tables;
-if (goodCatalogue === undefined || goodTable === undefined) throw new Error('the invented inputs have a catalogue and a table');
+if (goodCatalogue === undefined || goodTable === undefined)
+  throw new Error('the invented inputs have a catalogue and a table');
 const events = goodCatalogue.eventNames.length;
 
 /** What was thrown must be a refusal in words, and name what it names. */
@@ -30,14 +40,18 @@ function expectOutside(act: () => unknown, outside: OutsideDomain): void {
   expect(refusal.message).toBe(`${outside.parameter} is ${outside.value}; it must be ${outside.bound}.`);
 }
 
-const withBasis = (over: Partial<HouseBasis>) => (): unknown => prepare({ ...good, basis: { ...good.basis, ...over } });
+const withBasis = (over: Partial<HouseBasis>) => (): unknown =>
+  prepare({ ...good, basis: { ...good.basis, ...over } });
 const withLayer = (over: Partial<LayerTerms>) => (): unknown =>
   prepare({ ...good, programme: { ...good.programme, layers: [inventedLayer('A', 5, 10, over)] } });
-const withCatalogue = (over: Partial<Catalogue>) => (): unknown => prepare({ ...good, catalogues: [{ ...goodCatalogue, ...over }] });
+const withCatalogue = (over: Partial<Catalogue>) => (): unknown =>
+  prepare({ ...good, catalogues: [{ ...goodCatalogue, ...over }] });
 const withTable = (over: Partial<LossTable>) => (): unknown =>
   prepare({ ...good, programme: { ...good.programme, tables: [{ ...goodTable, ...over }] } });
-const withGrid = (over: Partial<ValuationInputs['grid']>) => (): unknown => prepare({ ...good, grid: { ...good.grid, ...over } });
-const filled = (x: number, at: number, rest: number): Float64Array => new Float64Array(events).fill(rest).fill(x, at, at + 1);
+const withGrid = (over: Partial<ValuationInputs['grid']>) => (): unknown =>
+  prepare({ ...good, grid: { ...good.grid, ...over } });
+const filled = (x: number, at: number, rest: number): Float64Array =>
+  new Float64Array(events).fill(rest).fill(x, at, at + 1);
 
 /** NaN is outside every bound. */
 const not = Number.NaN;
@@ -63,21 +77,35 @@ describe('what a run is refused for', () => {
     );
 
     it.each([-1, -2, Infinity, not])('the riskless rate %p', (risklessRate) =>
-      expectOutside(withBasis({ discounting: { mode: 'anchored', risklessRate } }), { parameter: 'The riskless rate', value: risklessRate, bound: 'above −1' }),
+      expectOutside(withBasis({ discounting: { mode: 'anchored', risklessRate } }), {
+        parameter: 'The riskless rate',
+        value: risklessRate,
+        bound: 'above −1',
+      }),
     );
 
     it.each([0, -1, Infinity, not])('the discount factor %p', (discountFactor) =>
-      expectOutside(withBasis({ discounting: { mode: 'stated', discountFactor } }), { parameter: 'The discount factor', value: discountFactor, bound: 'above 0' }),
+      expectOutside(withBasis({ discounting: { mode: 'stated', discountFactor } }), {
+        parameter: 'The discount factor',
+        value: discountFactor,
+        bound: 'above 0',
+      }),
     );
 
     it('brokerage, taxes and expenses that leave nothing of the premium, of a programme’s layer or the book’s', () => {
       const parameter = 'Layer A: brokerage, taxes and variable expense together';
       const act = (): unknown =>
-        prepare({ ...good, basis: { ...good.basis, taxes: 0.25, variableExpense: 0.25 }, programme: { ...good.programme, layers: [inventedLayer('A', 5, 10, { brokerage: 0.5 })] } });
+        prepare({
+          ...good,
+          basis: { ...good.basis, taxes: 0.25, variableExpense: 0.25 },
+          programme: { ...good.programme, layers: [inventedLayer('A', 5, 10, { brokerage: 0.5 })] },
+        });
       expectOutside(act, { parameter, value: 1, bound: 'below 1' });
       const [contract] = good.book;
       if (contract === undefined) throw new Error('the invented inputs have a book');
-      const book = [{ ...contract, layers: [{ ...inventedLayer('B', 5, 10, { brokerage: 0.99 }), premium: 1 }] }];
+      const book = [
+        { ...contract, layers: [{ ...inventedLayer('B', 5, 10, { brokerage: 0.99 }), premium: 1 }] },
+      ];
       expect(refused(() => prepare({ ...good, book })).outside?.parameter).toBe(parameter.replace('A', 'B'));
     });
   });
@@ -88,48 +116,93 @@ describe('what a run is refused for', () => {
       ['the attachment', 'attachment', [-1, Infinity, not], '0 or more'],
       ['the annual deductible', 'annualDeductible', [-1, Infinity, not], '0 or more'],
       ['the annual limit', 'annualLimit', [0, -1, not], 'above 0'],
-      ['the share kept after the quota share', 'quotaShareKept', [0, -0.1, 1.01, not], 'above 0 and 1 at most'],
+      [
+        'the share kept after the quota share',
+        'quotaShareKept',
+        [0, -0.1, 1.01, not],
+        'above 0 and 1 at most',
+      ],
       ['the co-participation', 'coParticipation', [-0.1, 1, not], '0 or more and below 1'],
       ['the line', 'line', [0, -0.1, 1.01, not], 'above 0 and 1 at most'],
       ['the brokerage', 'brokerage', [-0.1, 1, not], '0 or more and below 1'],
     ])('%s', (name, key, values, bound) =>
-      values.forEach((x) => expectOutside(withLayer({ [key]: x }), { parameter: `Layer A: ${name}`, value: x, bound })),
+      values.forEach((x) =>
+        expectOutside(withLayer({ [key]: x }), { parameter: `Layer A: ${name}`, value: x, bound }),
+      ),
     );
 
     it.each([-0.1, Infinity, not])('the price of a reinstatement %p', (price) => {
-      expectOutside(withLayer({ reinstatements: [1, price] }), { parameter: 'Layer A: the price of a reinstatement', value: price, bound: '0 or more' });
-      expectOutside(withLayer({ reinstatements: [], unlimitedReinstatementsAt: price }), { parameter: 'Layer A: the price of unlimited reinstatements', value: price, bound: '0 or more' });
+      expectOutside(withLayer({ reinstatements: [1, price] }), {
+        parameter: 'Layer A: the price of a reinstatement',
+        value: price,
+        bound: '0 or more',
+      });
+      expectOutside(withLayer({ reinstatements: [], unlimitedReinstatementsAt: price }), {
+        parameter: 'Layer A: the price of unlimited reinstatements',
+        value: price,
+        bound: '0 or more',
+      });
     });
 
     it('reinstatements beside unlimited ones', () =>
-      expectOutside(withLayer({ reinstatements: [1, 1], unlimitedReinstatementsAt: 0 }), { parameter: 'Layer A: the number of reinstatements beside unlimited ones', value: 2, bound: '0' }));
+      expectOutside(withLayer({ reinstatements: [1, 1], unlimitedReinstatementsAt: 0 }), {
+        parameter: 'Layer A: the number of reinstatements beside unlimited ones',
+        value: 2,
+        bound: '0',
+      }));
 
     it('a line above what the co-participation leaves', () =>
-      expectOutside(withLayer({ coParticipation: 0.25, line: 0.8 }), { parameter: 'Layer A: the line', value: 0.8, bound: 'above 0 and 0.75 at most' }));
+      expectOutside(withLayer({ coParticipation: 0.25, line: 0.8 }), {
+        parameter: 'Layer A: the line',
+        value: 0.8,
+        bound: 'above 0 and 0.75 at most',
+      }));
 
     it.each([0, -1, 1.5, Infinity, not])('an n-th event with n = %p', (first) =>
-      expectOutside(withLayer({ form: { kind: 'nth event', first, qualifying: 1 } }), { parameter: 'Layer A: the first event that counts', value: first, bound: 'a whole number from 1' }),
+      expectOutside(withLayer({ form: { kind: 'nth event', first, qualifying: 1 } }), {
+        parameter: 'Layer A: the first event that counts',
+        value: first,
+        bound: 'a whole number from 1',
+      }),
     );
 
     it.each([-1, Infinity, not])('a qualifying threshold of %p', (qualifying) =>
-      expectOutside(withLayer({ form: { kind: 'nth event', first: 1, qualifying } }), { parameter: 'Layer A: the qualifying threshold', value: qualifying, bound: '0 or more' }),
+      expectOutside(withLayer({ form: { kind: 'nth event', first: 1, qualifying } }), {
+        parameter: 'Layer A: the qualifying threshold',
+        value: qualifying,
+        bound: '0 or more',
+      }),
     );
 
     const aggregate = (threshold: number, cap: number | null, over: Partial<LayerTerms> = {}) =>
-      withLayer({ form: { kind: 'aggregate', threshold, counts: 'in full', cap }, reinstatements: [], ...over });
+      withLayer({
+        form: { kind: 'aggregate', threshold, counts: 'in full', cap },
+        reinstatements: [],
+        ...over,
+      });
 
     it.each([-1, Infinity, not])('an aggregate excess with threshold %p', (threshold) =>
-      expectOutside(aggregate(threshold, null), { parameter: 'Layer A: the threshold of an occurrence', value: threshold, bound: '0 or more' }),
+      expectOutside(aggregate(threshold, null), {
+        parameter: 'Layer A: the threshold of an occurrence',
+        value: threshold,
+        bound: '0 or more',
+      }),
     );
 
     it.each([2, 1, -1, not])('an aggregate excess with threshold 2 and cap %p', (cap) =>
-      expectOutside(aggregate(2, cap), { parameter: 'Layer A: the cap of an occurrence', value: cap, bound: 'above its threshold, 2' }),
+      expectOutside(aggregate(2, cap), {
+        parameter: 'Layer A: the cap of an occurrence',
+        value: cap,
+        bound: 'above its threshold, 2',
+      }),
     );
 
     it('an aggregate excess with reinstatements, limited or not', () => {
       const parameter = 'Layer A: the number of reinstatements of an aggregate excess';
       expectOutside(aggregate(2, null, { reinstatements: [1] }), { parameter, value: 1, bound: '0' });
-      expect(refused(aggregate(2, null, { unlimitedReinstatementsAt: 0 })).outside?.parameter).toBe(parameter);
+      expect(refused(aggregate(2, null, { unlimitedReinstatementsAt: 0 })).outside?.parameter).toBe(
+        parameter,
+      );
     });
 
     it.each<[string, object, number, string]>([
@@ -140,14 +213,21 @@ describe('what a run is refused for', () => {
       ['the annual limit of an inuring cover', { annualLimit: 0 }, 0, 'above 0'],
       ['the annual limit of an inuring cover', { annualLimit: not }, not, 'above 0'],
     ])('%s: %p', (name, over, x, bound) =>
-      expectOutside(withLayer({ inuringCovers: [{ limit: 1, attachment: 1, annualLimit: Infinity, ...over }] }), { parameter: `Layer A: ${name}`, value: x, bound }),
+      expectOutside(
+        withLayer({ inuringCovers: [{ limit: 1, attachment: 1, annualLimit: Infinity, ...over }] }),
+        { parameter: `Layer A: ${name}`, value: x, bound },
+      ),
     );
   });
 
   describe('a catalogue', () => {
     const name = 'Catalogue invented-wind';
     it('without events', () =>
-      expectOutside(withCatalogue({ eventNames: [], ratePerYear: new Float64Array(0) }), { parameter: `The number of events of ${name}`, value: 0, bound: 'above 0' }));
+      expectOutside(withCatalogue({ eventNames: [], ratePerYear: new Float64Array(0) }), {
+        parameter: `The number of events of ${name}`,
+        value: 0,
+        bound: 'above 0',
+      }));
 
     it.each<[string, Partial<Catalogue>]>([
       ['rates', { ratePerYear: new Float64Array(3).fill(1) }],
@@ -157,23 +237,43 @@ describe('what a run is refused for', () => {
       ['groups', { groupIndex: new Int32Array(3) }],
       ['rate factors', { rateFactor: new Float64Array(3).fill(1) }],
     ])('whose %s are not one an event', (column, over) =>
-      expectOutside(withCatalogue(over), { parameter: `The number of ${column} of ${name}`, value: 3, bound: `its number of events, ${events}` }),
+      expectOutside(withCatalogue(over), {
+        parameter: `The number of ${column} of ${name}`,
+        value: 3,
+        bound: `its number of events, ${events}`,
+      }),
     );
 
     it.each([0, -1, Infinity, not])('with a rate of %p', (rate) =>
-      expectOutside(withCatalogue({ ratePerYear: filled(rate, 5, 0.01) }), { parameter: `A rate of ${name}`, value: rate, bound: 'above 0 and finite' }),
+      expectOutside(withCatalogue({ ratePerYear: filled(rate, 5, 0.01) }), {
+        parameter: `A rate of ${name}`,
+        value: rate,
+        bound: 'above 0 and finite',
+      }),
     );
 
     it.each([0, -1, Infinity, not])('with a rate factor of %p', (factor) =>
-      expectOutside(withCatalogue({ rateFactor: filled(factor, 5, 1) }), { parameter: `A rate factor of ${name}`, value: factor, bound: 'above 0 and finite' }),
+      expectOutside(withCatalogue({ rateFactor: filled(factor, 5, 1) }), {
+        parameter: `A rate factor of ${name}`,
+        value: factor,
+        bound: 'above 0 and finite',
+      }),
     );
 
     it.each([0, -3, 367, Infinity])('with a season day of %p', (day) =>
-      expectOutside(withCatalogue({ seasonDay: filled(day, 5, 1) }), { parameter: `A season day of ${name}`, value: day, bound: 'from 1 to 366' }),
+      expectOutside(withCatalogue({ seasonDay: filled(day, 5, 1) }), {
+        parameter: `A season day of ${name}`,
+        value: day,
+        bound: 'from 1 to 366',
+      }),
     );
 
     it.each([1, 0.5, Infinity, not])('with a group whose ratio of variance to mean is %p', (varianceToMean) =>
-      expectOutside(withCatalogue({ groups: [{ name: 'storms', varianceToMean }] }), { parameter: 'The ratio of variance to mean of group storms', value: varianceToMean, bound: 'above 1' }),
+      expectOutside(withCatalogue({ groups: [{ name: 'storms', varianceToMean }] }), {
+        parameter: 'The ratio of variance to mean of group storms',
+        value: varianceToMean,
+        bound: 'above 1',
+      }),
     );
 
     it('in two versions', () => {
@@ -190,49 +290,88 @@ describe('what a run is refused for', () => {
     };
 
     it('on a catalogue that the run does not have', () =>
-      expect(refused(withTable({ catalogueLineage: 'elsewhere' })).message).toBe('Loss table programme rests on a catalogue that the run does not have.'));
+      expect(refused(withTable({ catalogueLineage: 'elsewhere' })).message).toBe(
+        'Loss table programme rests on a catalogue that the run does not have.',
+      ));
 
     it('that names an event outside its catalogue, or one twice', () => {
-      expect(refused(withTable({ eventIndex: goodTable.eventIndex.map((event, r) => (r === 0 ? events : event)) })).message).toMatch(/names an event outside its catalogue/);
-      expect(refused(withTable({ eventIndex: goodTable.eventIndex.map((event, r) => (r === 0 ? -1 : event)) })).message).toMatch(/names an event outside its catalogue/);
-      expect(refused(withTable({ eventIndex: goodTable.eventIndex.map(() => 4) })).message).toBe('Loss table programme names event event 4 twice.');
+      expect(
+        refused(withTable({ eventIndex: goodTable.eventIndex.map((event, r) => (r === 0 ? events : event)) }))
+          .message,
+      ).toMatch(/names an event outside its catalogue/);
+      expect(
+        refused(withTable({ eventIndex: goodTable.eventIndex.map((event, r) => (r === 0 ? -1 : event)) }))
+          .message,
+      ).toMatch(/names an event outside its catalogue/);
+      expect(refused(withTable({ eventIndex: goodTable.eventIndex.map(() => 4) })).message).toBe(
+        'Loss table programme names event event 4 twice.',
+      );
     });
 
     it.each([0, -1, Infinity, not])('with an exchange rate of %p', (toContractCurrency) =>
-      expectOutside(withTable({ toContractCurrency }), { parameter: 'The exchange rate of Loss table programme', value: toContractCurrency, bound: 'above 0' }),
+      expectOutside(withTable({ toContractCurrency }), {
+        parameter: 'The exchange rate of Loss table programme',
+        value: toContractCurrency,
+        bound: 'above 0',
+      }),
     );
 
     it.each([-0.1, 1.1, not])('with a common share of %p', (share) => {
       const event = goodCatalogue.eventNames[goodTable.eventIndex[0] ?? 0] ?? '';
-      expectOutside(withTable({ commonShare: firstRow(share, goodTable.commonShare) }), { parameter: `Loss table programme, event ${event}: the common share`, value: share, bound: 'from 0 to 1' });
+      expectOutside(withTable({ commonShare: firstRow(share, goodTable.commonShare) }), {
+        parameter: `Loss table programme, event ${event}: the common share`,
+        value: share,
+        bound: 'from 0 to 1',
+      });
     });
 
     it('with moments that no law has', () => {
-      expect(refused(withTable({ meanLoss: firstRow(-1, goodTable.meanLoss) })).outside?.parameter).toBe('A mean loss');
+      expect(refused(withTable({ meanLoss: firstRow(-1, goodTable.meanLoss) })).outside?.parameter).toBe(
+        'A mean loss',
+      );
     });
   });
 
   describe('the grid, the programme and the book', () => {
     it.each(['', '0123', '00112233445566FF', '00112233445566fg', '00112233445566ff0'])('seed %p', (seed) =>
-      expectOutside(withGrid({ seed }), { parameter: 'The seed', value: seed, bound: 'sixteen hexadecimal digits' }),
+      expectOutside(withGrid({ seed }), {
+        parameter: 'The seed',
+        value: seed,
+        bound: 'sixteen hexadecimal digits',
+      }),
     );
 
     it.each([999, 0, 1000.5, 10_000_001, Infinity, not])('%p states', (states) =>
-      expectOutside(withGrid({ states }), { parameter: 'The number of states', value: states, bound: 'a whole number from 1,000 to 10,000,000' }),
+      expectOutside(withGrid({ states }), {
+        parameter: 'The number of states',
+        value: states,
+        bound: 'a whole number from 1,000 to 10,000,000',
+      }),
     );
 
     it.each([0, 367, not])('inception on day %p', (inceptionDay) =>
-      expectOutside(() => prepare({ ...good, programme: { ...good.programme, inceptionDay } }), { parameter: 'The day of inception', value: inceptionDay, bound: 'from 1 to 366' }),
+      expectOutside(() => prepare({ ...good, programme: { ...good.programme, inceptionDay } }), {
+        parameter: 'The day of inception',
+        value: inceptionDay,
+        bound: 'from 1 to 366',
+      }),
     );
 
     it('no layers, in the programme or in a contract of the book', () => {
       const outside = { parameter: 'The number of layers of a contract', value: 0, bound: 'above 0' };
       expectOutside(() => prepare({ ...good, programme: { ...good.programme, layers: [] } }), outside);
-      expectOutside(() => prepare({ ...good, book: [{ tables: [], layers: [], toHouseCurrency: 1 }] }), outside);
+      expectOutside(
+        () => prepare({ ...good, book: [{ tables: [], layers: [], toHouseCurrency: 1 }] }),
+        outside,
+      );
     });
 
     it.each([0, -1, Infinity, not])('an exchange rate of %p to the house', (toHouseCurrency) =>
-      expectOutside(() => prepare({ ...good, programme: { ...good.programme, toHouseCurrency } }), { parameter: 'The exchange rate of a contract', value: toHouseCurrency, bound: 'above 0' }),
+      expectOutside(() => prepare({ ...good, programme: { ...good.programme, toHouseCurrency } }), {
+        parameter: 'The exchange rate of a contract',
+        value: toHouseCurrency,
+        bound: 'above 0',
+      }),
     );
 
     it('a premium of the book that is no number', () => {
@@ -250,13 +389,39 @@ describe('moments of a loss that no law has', () => {
   it.each<[string, [number, number, number], OutsideDomain]>([
     ['a mean below 0', [-1, 0, not], { parameter: 'A mean loss', value: -1, bound: '0 or more' }],
     ['a mean that is no number', [not, 1, not], { parameter: 'A mean loss', value: not, bound: '0 or more' }],
-    ['an infinite mean', [Infinity, 1, not], { parameter: 'A mean loss', value: Infinity, bound: '0 or more' }],
-    ['a deviation below 0', [1, -1, not], { parameter: 'The deviation of a loss', value: -1, bound: '0 or more' }],
-    ['a deviation that is no number', [1, not, not], { parameter: 'The deviation of a loss', value: not, bound: '0 or more' }],
-    ['a deviation of a loss with mean 0', [0, 1, not], { parameter: 'The deviation of a loss with mean 0', value: 1, bound: '0' }],
-    ['an infinite exposed value', [1, 1, Infinity], { parameter: 'An exposed value', value: Infinity, bound: 'finite' }],
-    ['a certain loss above the exposed value', [5, 0, 4], { parameter: 'A mean loss', value: 5, bound: 'at most the exposed value, 4' }],
-  ])('%s', (_name, [mean, sd, exposed], outside) => expectOutside(() => severityOf(mean, sd, exposed), outside));
+    [
+      'an infinite mean',
+      [Infinity, 1, not],
+      { parameter: 'A mean loss', value: Infinity, bound: '0 or more' },
+    ],
+    [
+      'a deviation below 0',
+      [1, -1, not],
+      { parameter: 'The deviation of a loss', value: -1, bound: '0 or more' },
+    ],
+    [
+      'a deviation that is no number',
+      [1, not, not],
+      { parameter: 'The deviation of a loss', value: not, bound: '0 or more' },
+    ],
+    [
+      'a deviation of a loss with mean 0',
+      [0, 1, not],
+      { parameter: 'The deviation of a loss with mean 0', value: 1, bound: '0' },
+    ],
+    [
+      'an infinite exposed value',
+      [1, 1, Infinity],
+      { parameter: 'An exposed value', value: Infinity, bound: 'finite' },
+    ],
+    [
+      'a certain loss above the exposed value',
+      [5, 0, 4],
+      { parameter: 'A mean loss', value: 5, bound: 'at most the exposed value, 4' },
+    ],
+  ])('%s', (_name, [mean, sd, exposed], outside) =>
+    expectOutside(() => severityOf(mean, sd, exposed), outside),
+  );
 
   it.each([
     ['at the bound', 2, 4, 10],
@@ -267,7 +432,11 @@ describe('moments of a loss that no law has', () => {
     ['an exposed value below 0', 1, 1, -5],
   ])('a deviation that no beta has, never clipped: %s', (_name, mean, sd, exposed) => {
     const refusal = refused(() => severityOf(mean, sd, exposed));
-    expect(refusal.outside).toEqual({ parameter: 'The squared deviation of a loss', value: sd * sd, bound: 'below mean × (exposed value − mean)' });
+    expect(refusal.outside).toEqual({
+      parameter: 'The squared deviation of a loss',
+      value: sd * sd,
+      bound: 'below mean × (exposed value − mean)',
+    });
   });
 
   it('are none just within', () => expect(severityOf(2, 3.999, 10).kind).toBe('beta'));
@@ -276,18 +445,28 @@ describe('moments of a loss that no law has', () => {
 describe('what is refused once the states are known', () => {
   it('a house that the book alone leaves at its floor in every state', () => {
     const ruined = { ...good, basis: { ...good.basis, capital: 0.5, attritionalAndOutward: 100 } };
-    expect(refused(() => value(ruined)).message).toMatch(/at or below its floor: look at its capital, its floor and its book/);
+    expect(refused(() => value(ruined)).message).toMatch(
+      /at or below its floor: look at its capital, its floor and its book/,
+    );
     // Without risk aversion nothing hangs on the floor.
     expect(() => value({ ...ruined, basis: { ...ruined.basis, riskAversion: 0 } })).not.toThrow();
   });
 
   it('a programme of which no layer pays in any state', () => {
-    const dry = { ...good, programme: { ...good.programme, layers: [inventedLayer('A', 1, 1e9), inventedLayer('B', 1, 1e10)] } };
-    expect(refused(() => value(dry)).message).toMatch(/does any layer pay: every attachment is beyond what the loss tables can lose/);
+    const dry = {
+      ...good,
+      programme: { ...good.programme, layers: [inventedLayer('A', 1, 1e9), inventedLayer('B', 1, 1e10)] },
+    };
+    expect(refused(() => value(dry)).message).toMatch(
+      /does any layer pay: every attachment is beyond what the loss tables can lose/,
+    );
   });
 
   it('a stated discount that implies no riskless rate', () => {
-    const stated = { ...good, basis: { ...good.basis, discounting: { mode: 'stated' as const, discountFactor: 1e-6 } } };
+    const stated = {
+      ...good,
+      basis: { ...good.basis, discounting: { mode: 'stated' as const, discountFactor: 1e-6 } },
+    };
     expect(refused(() => value(stated)).message).toMatch(/implies no sensible riskless rate/);
   });
 });

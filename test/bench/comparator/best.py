@@ -4,12 +4,16 @@
     OMP_NUM_THREADS=1 OPENBLAS_NUM_THREADS=1 python3 best.py CASE [--occurrences FOLDER]
 """
 import math
+import sys
 
 import numpy as np
 from scipy import special
 
-import common
-from quantiles import BETA, BetaQuantiles, RowQuantiles
+# Leave nothing behind in the folder.
+sys.dont_write_bytecode = True
+
+import common  # noqa: E402
+from quantiles import BETA, BetaQuantiles, RowQuantiles  # noqa: E402
 
 CHUNK = 1 << 16
 """Occurrences worked on together, so that their columns stay in the nearer caches."""

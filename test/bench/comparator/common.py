@@ -301,6 +301,16 @@ def no_tail_point(years):
     return {"years": years, "value": None, "valueError": None, "tailValue": None, "tailValueError": None}
 
 
+def as_estimates(report):
+    """Figures that have a standard error, as an estimate each."""
+    errors = report.pop("standardErrors")
+    return {**report, **{name: {"value": report[name], "standardError": error} for name, error in errors.items()}}
+
+
+def with_estimates(results):
+    return {**results, "perLayer": list(map(as_estimates, results["perLayer"])), "programme": as_estimates(results["programme"])}
+
+
 def run(price):
     """Runs a comparator from the command line. `price(case, occurrences or None, clock)` gives its results and a function
     that prices changed layers on what is in memory, given the layers and a clock."""
@@ -319,6 +329,6 @@ def run(price):
         "timings": {"cold": clock.total, "phases": clock.phases, "again": second.total, "againPhases": second.phases},
         "peakRssMb": resource.getrusage(resource.RUSAGE_SELF).ru_maxrss / 1024,
         "versions": {"python": platform.python_version(), "numpy": np.__version__, "scipy": scipy.__version__},
-        "results": results,
-        "again": {key: changed[key] for key in ("perLayer", "programme")},
+        "results": with_estimates(results),
+        "again": {key: value for key, value in with_estimates(changed).items() if key in ("perLayer", "programme")},
     }, allow_nan=False))

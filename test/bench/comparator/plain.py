@@ -4,11 +4,15 @@
     OMP_NUM_THREADS=1 OPENBLAS_NUM_THREADS=1 python3 plain.py CASE [--occurrences FOLDER]
 """
 import math
+import sys
 
 import numpy as np
 from scipy import special, stats
 
-import common
+# Leave nothing behind in the folder.
+sys.dont_write_bytecode = True
+
+import common  # noqa: E402
 
 
 def draw(case):

@@ -1,9 +1,9 @@
 """Quantiles of many laws at normal scores, from one table that is made in a few hundredths of a second.
 
-The logit of a beta quantile, less its mean and over its deviation or nearly so, is a smooth and bounded function of the two shapes and
-of the score. So it is worked out by SciPy at Chebyshev nodes of the shapes and equal steps of the score,
-turned into coefficients of a cubic B-spline in the score, and these are read off at every row's shapes by one product of
-matrices. A row is then 33 numbers, and a loss is four of them, a cubic and an exponential. Laws on whose sample the table
+The logit of a beta quantile, less its mean and over its deviation or nearly so, is a smooth and bounded function of the two
+shapes and of the score. So it is worked out by SciPy at Chebyshev nodes of the shapes and equal steps of the score, turned
+into coefficients of a cubic B-spline in the score, and these are read off at every row's shapes by one product of matrices.
+A row is then 33 numbers, and a loss is four of them, a cubic and an exponential. Laws on whose sample the table
 errs by more than it should, and scores beyond it, are left to SciPy, one by one.
 
 Sources: L. N. Trefethen, Approximation Theory and Approximation Practice (2013), for interpolation at Chebyshev nodes;
