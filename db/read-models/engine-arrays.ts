@@ -1,4 +1,7 @@
 import type { EntityManager } from 'typeorm';
+import { readColumns } from '../copy-out';
+
+const UUID = /^[0-9a-f]{8}(-[0-9a-f]{4}){3}-[0-9a-f]{12}$/;
 
 /** Columns of a catalogue version, one entry an event in the order of its file. */
 export interface CatalogueColumns {
@@ -64,14 +67,6 @@ export interface LossColumns {
   readonly exposedValue: Float64Array;
 }
 
-interface LossRow {
-  event_no: number;
-  mean_loss: number;
-  sd: number;
-  common_share: number;
-  exposed_value: number | null;
-}
-
 export async function lossColumns(manager: EntityManager, versionId: string): Promise<LossColumns> {
   const heads: { lineage: string; catalogue_id: string; currency: string }[] = await manager.query(
     'SELECT t.lineage, t.catalogue_id, v.currency FROM loss_table_versions v JOIN loss_tables t ON t.id = v.loss_table_id WHERE v.id = $1',
@@ -79,18 +74,22 @@ export async function lossColumns(manager: EntityManager, versionId: string): Pr
   );
   const head = heads[0];
   if (head === undefined) throw new Error('a run names a loss table that is not there');
-  const rows: LossRow[] = await manager.query(
-    'SELECT event_no, mean_loss, sd, common_share, exposed_value FROM loss_rows WHERE version_id = $1 ORDER BY row_no',
-    [versionId],
+  // COPY takes no parameters: what goes into its text must be an id and nothing else.
+  if (!UUID.test(versionId)) throw new Error('a run names a loss table by something that is no id');
+  const [eventNumbers, meanLoss, sd, commonShare, exposedValue] = await readColumns(
+    manager,
+    `SELECT event_no, mean_loss, sd, common_share, exposed_value FROM loss_rows WHERE version_id = '${versionId}' ORDER BY row_no`,
+    ['int4', 'float8', 'float8', 'float8', 'float8'],
   );
+  const none = new Float64Array(0);
   return {
     lineage: head.lineage,
     catalogueId: head.catalogue_id,
     currency: head.currency,
-    eventNumbers: Int32Array.from(rows, (row) => row.event_no),
-    meanLoss: Float64Array.from(rows, (row) => row.mean_loss),
-    sd: Float64Array.from(rows, (row) => row.sd),
-    commonShare: Float64Array.from(rows, (row) => row.common_share),
-    exposedValue: Float64Array.from(rows, (row) => row.exposed_value ?? Number.NaN),
+    eventNumbers: Int32Array.from(eventNumbers ?? none),
+    meanLoss: meanLoss ?? none,
+    sd: sd ?? none,
+    commonShare: commonShare ?? none,
+    exposedValue: exposedValue ?? none,
   };
 }
