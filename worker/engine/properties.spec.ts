@@ -235,7 +235,7 @@ describe('the walk-away premium', () => {
           const layers = lines.map((line) =>
             inventedLayer(`line-${line}`, limit, attachment, { ...terms, line }),
           );
-          const found = value(small(layers, { riskAversion })).layers;
+          const found = value(small(layers, { riskAversion })).layers.slice(0, lines.length);
           found.forEach((layer, i) => {
             expectAtLeast(layer.walkAwayPremium.value, layer.marginalPremium.value, 1e-10);
             if (i > 0)
@@ -308,7 +308,7 @@ describe('risk aversion', () => {
         const today = 1 / (1 + risklessRate);
         const reinstated = 1 - taxes - (layer.brokerageOnReinstatements === true ? layer.brokerage : 0);
         const premium =
-          (z * today * (1 + lossAdjustment) + fixed / line) /
+          (z * today * (1 + lossAdjustment) + fixed / 2 / line) /
           (1 - layer.brokerage - taxes - variableExpense + reinstated * rho * today);
         expectClose(found?.marginalPremium.value ?? 0, premium, 1e-12);
         expectClose(found?.walkAwayPremium.value ?? 0, premium, 1e-10);

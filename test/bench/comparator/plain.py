@@ -13,6 +13,7 @@ from scipy import special, stats
 sys.dont_write_bytecode = True
 
 import common  # noqa: E402
+from case_files import Occurrences  # noqa: E402
 
 
 def draw(case):
@@ -26,7 +27,7 @@ def draw(case):
     day = np.where(np.isnan(season), rng.uniform(0, common.DAYS, len(state)), season - 1)
     day = (day - (case.inception_day - 1)) % common.DAYS
     order = np.lexsort((day, state))
-    return common.Occurrences(state[order], event[order], day[order], rng.standard_normal(len(state))), rng
+    return Occurrences(state[order], event[order], day[order], rng.standard_normal(len(state))), rng
 
 
 def table_loss(table, occurrences, rng):

@@ -1,0 +1,2 @@
+export { calibrate, type Calibration, type CalibrationOptions } from './calibrate';
+export type { CalibratedHouse, PastDeal } from './fitted';
