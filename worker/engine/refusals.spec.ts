@@ -276,6 +276,16 @@ describe('what a run is refused for', () => {
       }),
     );
 
+    it.each<[string, Partial<Catalogue>]>([
+      ['a peril', { perilIndex: new Uint16Array(events).fill(9) }],
+      ['a region', { regionIndex: new Uint16Array(events).fill(9) }],
+      ['a group', { groupIndex: new Int32Array(events).fill(9) }],
+    ])('that numbers %s which it does not name', (of, over) => {
+      const refusal = refused(withCatalogue(over));
+      expect(refusal.outside).toMatchObject({ value: 9 });
+      expect(refusal.message).toContain(of);
+    });
+
     it('in two versions', () => {
       const refusal = refused(() => prepare({ ...good, catalogues: [goodCatalogue, goodCatalogue] }));
       expect(refusal.message).toBe('A run uses one version of a catalogue.');
@@ -324,6 +334,15 @@ describe('what a run is refused for', () => {
         bound: 'from 0 to 1',
       });
     });
+
+    it.each(['meanLoss', 'sd', 'commonShare', 'exposedValue'] as const)(
+      'with a row too few in %s',
+      (column) => {
+        const rows = goodTable.eventIndex.length;
+        const { outside } = refused(withTable({ [column]: goodTable[column].slice(1) }));
+        expect(outside).toMatchObject({ value: rows - 1, bound: `its number of rows, ${rows}` });
+      },
+    );
 
     it('with moments that no law has', () => {
       expect(refused(withTable({ meanLoss: firstRow(-1, goodTable.meanLoss) })).outside?.parameter).toBe(
@@ -468,5 +487,47 @@ describe('what is refused once the states are known', () => {
       basis: { ...good.basis, discounting: { mode: 'stated' as const, discountFactor: 1e-6 } },
     };
     expect(refused(() => value(stated)).message).toMatch(/implies no sensible riskless rate/);
+  });
+
+  it('a stated discount of which any riskless rate would be as true: logarithmic utility of an idle house', () => {
+    const idle = {
+      ...good,
+      book: [],
+      basis: {
+        ...good.basis,
+        riskAversion: 1,
+        attritionalAndOutward: 0,
+        discounting: { mode: 'stated' as const, discountFactor: 1 },
+      },
+    };
+    expect(refused(() => value(idle)).message).toMatch(/implies no sensible riskless rate/);
+  });
+
+  it('a floor so low for its risk aversion that no number holds the worth of money there', () => {
+    const [contract] = good.book;
+    if (contract === undefined) throw new Error('the invented inputs have a book');
+    const book = [{ ...contract, layers: contract.layers.map((layer) => ({ ...layer, line: 1 })) }];
+    for (const [riskAversion, floor] of [
+      [30, 1e-6],
+      [400, 0.25],
+      [3, 1e-200],
+    ] as const) {
+      const basis = { ...good.basis, capital: 15, attritionalAndOutward: 0, riskAversion, floor };
+      const refusal = refused(() => value({ ...good, book, basis }));
+      // Only some years are at the floor: it must not be said of every one.
+      expect(refusal.message).not.toMatch(/In every simulated year/);
+    }
+  });
+
+  it('not a house that some years leave at a low floor, though they weigh more than all others to the last digit', () => {
+    const [contract] = good.book;
+    if (contract === undefined) throw new Error('the invented inputs have a book');
+    const book = [{ ...contract, layers: contract.layers.map((layer) => ({ ...layer, line: 1 })) }];
+    const basis = { ...good.basis, capital: 15, attritionalAndOutward: 0, riskAversion: 12, floor: 0.01 };
+    const { house, series } = value({ ...good, book, basis });
+    const floored = series.capital.filter((k) => k <= 0.01).length;
+    expect(floored).toBeGreaterThan(0);
+    expect(floored).toBeLessThan(500);
+    expect(house.floorShare).toBeGreaterThan(0.99);
   });
 });

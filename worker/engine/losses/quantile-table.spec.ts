@@ -3,7 +3,7 @@ import { betaLaw } from '../math/beta';
 import { normalCdf, normalQuantile } from '../math/normal';
 import { KNOTS, LAW_KNOTS, RANGE, fillKnots, fitsTable, logitFromKnots } from './quantile-table';
 
-const SHAPES = [0.01, 0.03, 0.1, 0.2, 0.5, 1, 2.5, 8, 40, 300, 10_000] as const;
+const SHAPES = [0.01, 0.03, 0.1, 0.2, 0.5, 1, 2.5, 8, 40, 300, 10_000, 1e6, 1e7] as const;
 /** Levels half-way between knots, where the quintic is furthest off, and others. */
 const SCORES = Array.from({ length: 4 * KNOTS - 3 }, (_unused, i) => -RANGE + (i * 2 * RANGE) / (4 * KNOTS - 4));
 

@@ -10,7 +10,7 @@ import { normalCdf, normalDensity } from '../math/normal';
  * is taken, and for laws with both shapes small, whose logits bend sharply in the middle.
  *
  * Relative error of the quantile and of its complement at most 1e-5, and 1e-6 with both shapes 0.5 or more: tested against
- * an independent library over shapes from 0.01 to 10⁴.
+ * an independent library over shapes from 0.01 to 10⁷.
  */
 export const RANGE = 4;
 const STEP = 0.5;
@@ -21,7 +21,7 @@ export const LAW_KNOTS = 3 * KNOTS;
 /** Whether a law may be read from a table. */
 export function fitsTable(a: number, b: number): boolean {
   const [least, largest] = a < b ? [a, b] : [b, a];
-  return largest <= 10_000 && ((least >= 0.1 && largest >= 0.5) || (least >= 0.01 && largest >= 2.5));
+  return largest <= 1e7 && ((least >= 0.1 && largest >= 0.5) || (least >= 0.01 && largest >= 2.5));
 }
 
 const CENTRE = (KNOTS - 1) / 2;

@@ -2,7 +2,7 @@ import oracle from '@stdlib/stats-base-dists-beta-quantile';
 import { betaLaw, betaQuantile, logitStart } from './beta';
 import { normalCdf, normalQuantile } from './normal';
 
-const SHAPES = [0.02, 0.1, 0.5, 1, 1.7, 5, 30, 400] as const;
+const SHAPES = [0.02, 0.1, 0.5, 1, 1.7, 5, 30, 400, 20_000, 1e6] as const;
 const LEVELS = [1e-9, 1e-6, 1e-3, 0.05, 0.3, 0.5, 0.7, 0.95, 0.999, 1 - 1e-6, 1 - 1e-9] as const;
 
 describe('beta quantile', () => {

@@ -40,11 +40,13 @@ function continuedFraction(x: number, a: number, b: number): number {
     // The last two convergents agree: denominators' quotients are compared without dividing.
     const gap = denominator * before - beforeDenominator * numerator;
     if (Math.abs(gap) <= 3e-16 * Math.abs(denominator * before)) break;
-    if (numerator > LARGE || numerator < -LARGE) {
-      numerator /= LARGE;
-      denominator /= LARGE;
-      before /= LARGE;
-      beforeDenominator /= LARGE;
+    // Only quotients matter: kept in range, for with large shapes the terms shrink or grow without end.
+    const magnitude = Math.abs(numerator);
+    if (magnitude > LARGE || magnitude < 1 / LARGE) {
+      numerator /= magnitude;
+      denominator /= magnitude;
+      before /= magnitude;
+      beforeDenominator /= magnitude;
     }
   }
   return denominator / numerator;
