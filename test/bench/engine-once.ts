@@ -2,7 +2,7 @@ import { join } from 'node:path';
 import { computePool } from '../../worker/compute/pool';
 import { course, openWorkspace, perform, priceAgain, value, type Valuation, type ValuationInputs, type Workspace } from '../../worker/engine';
 import { allowedEvents } from '../../worker/engine/layers/filter';
-import { layerStates } from '../../worker/engine/layers/layer-states';
+import { layerStates, type LayerStates } from '../../worker/engine/layers/layer-states';
 import { plainMemory } from '../../worker/engine/model/memory';
 import { benchInputs } from './case';
 import { exportOccurrences } from './export';
@@ -43,9 +43,13 @@ function valued(inputs: ValuationInputs): { workspace: Workspace; valuation: Val
   let step = steps.next();
   while (step.done !== true) {
     const { tasks } = step.value;
-    const found = tasks.map((task) => perform(workspace, task));
+    const found = tasks.map((task) => {
+      const one = perform(workspace, task);
+      phase(task.kind);
+      return one;
+    });
     step = steps.next(found);
-    phase(tasks[0]?.kind ?? '');
+    phase('joining');
   }
   return { workspace, valuation: step.value, phases };
 }
@@ -64,19 +68,14 @@ function cold(inputs: ValuationInputs) {
 function kernel(inputs: ValuationInputs) {
   const { workspace } = valued(inputs);
   const times: number[] = [];
-  let payoffs = 0;
-  let reinstatements = 0;
+  let valuedLayers: LayerStates[] = [];
   for (let pass = 0; pass < 15; pass += 1) {
     const since = process.hrtime.bigint();
-    [payoffs, reinstatements] = [0, 0];
-    for (const layer of inputs.programme.layers) {
-      const { payoff, reinstatement } = layerStates(layer, workspace.allBlocks(), allowedEvents(workspace.prepared, layer), plainMemory);
-      payoffs += payoff.reduce((a, b) => a + b, 0);
-      reinstatements += reinstatement.reduce((a, b) => a + b, 0);
-    }
+    valuedLayers = inputs.programme.layers.map((layer) => layerStates(layer, workspace.allBlocks(), allowedEvents(workspace.prepared, layer), plainMemory));
     times.push(seconds(since));
   }
-  return { median: times.sort((a, b) => a - b)[7] ?? 0, payoffs, reinstatements };
+  const total = (of: (layer: LayerStates) => Float64Array): number => valuedLayers.reduce((sum, layer) => sum + of(layer).reduce((a, b) => a + b, 0), 0);
+  return { median: times.sort((a, b) => a - b)[7] ?? 0, payoffs: total(({ payoff }) => payoff), reinstatements: total(({ reinstatement }) => reinstatement) };
 }
 
 async function threads(inputs: ValuationInputs, count: number) {

@@ -6,6 +6,7 @@ export type { Allocate } from './model/memory';
 export { priceAgain } from './run/again';
 export { course, takeFound, type Step } from './run/course';
 export { perform, type Found, type Task } from './run/tasks';
+export { payoffInEveryState } from './run/valuation';
 export type { LayerValuation, ProgrammeValuation, Valuation } from './run/valuation';
 export { openWorkspace, value } from './run/value';
 export { Workspace, shareMemory, type SharedMemory } from './run/workspace';

@@ -5,10 +5,10 @@ import { inventedInputs, inventedLayer } from './testing/invented';
 /** A hash of every byte of a valuation, by part, so that a difference says where it is. */
 const bytes = (valuation: Valuation): Record<string, string> => {
   const { series, ...told } = valuation;
-  const hash = (of: string | Float64Array): string => createHash('sha256').update(typeof of === 'string' ? of : new Uint8Array(of.buffer)).digest('hex');
+  const hash = (of: string | Float64Array): string => createHash('sha256').update(typeof of === 'string' ? of : new Uint8Array(of.buffer, of.byteOffset, of.byteLength)).digest('hex');
   return {
     ...Object.fromEntries(Object.entries(told).map(([part, figures]) => [part, hash(JSON.stringify(figures))])),
-    series: [series.capital, ...series.payoffs].map(hash).join(' '),
+    series: [series.capital, ...series.paying.flatMap(({ payoff, reinstatement }) => [payoff, reinstatement])].map(hash).join(' '),
   };
 };
 

@@ -1,3 +1,4 @@
+import { PaidYears } from '../layers/each-year';
 import { BLOCK_STATES } from '../model/inputs';
 import { Occurrences } from '../random/occurrences';
 
@@ -8,6 +9,7 @@ export class Scratch {
   event = new Uint32Array(0);
   place = new Uint32Array(0);
   order = new Uint32Array(0);
+  readonly years = new PaidYears(BLOCK_STATES);
   readonly starts = new Uint32Array(BLOCK_STATES + 1);
 
   constructor(events: number) {

@@ -1,5 +1,5 @@
 import type { Laws } from '../losses/laws';
-import { eachYear } from '../layers/each-year';
+import { eachYear, type PaidYears } from '../layers/each-year';
 import { allowedEvents } from '../layers/filter';
 import { LayerYear } from '../layers/layer-year';
 import { newBlock, statesOfBlock, type BlockLosses } from '../model/blocks';
@@ -14,16 +14,18 @@ function emptyLosses(count: number): BlockLosses {
 }
 
 /** Adds what a contract of the book costs the house in each state, house currency: losses with their adjustment, less reinstatement premiums. */
-function addBookLoss(bookLoss: Float64Array, prepared: Prepared, contract: PreparedContract, losses: BlockLosses): void {
+function addBookLoss(bookLoss: Float64Array, years: PaidYears, prepared: Prepared, contract: PreparedContract, losses: BlockLosses): void {
   const { basis } = prepared.inputs;
   contract.layers.forEach((layer, l) => {
     const house = layer.line * contract.toHouseCurrency;
     const kept = 1 - basis.taxes - (layer.brokerageOnReinstatements === true ? layer.brokerage : 0);
     const premium = (contract.premiums[l] ?? 0) * kept;
     const cost = 1 + basis.lossAdjustment;
-    eachYear(new LayerYear(layer), losses, allowedEvents(prepared, layer), null, (state, payoff, reinstatement) => {
-      bookLoss[state] = (bookLoss[state] ?? 0) + house * (payoff * cost - premium * reinstatement);
-    });
+    eachYear(years, new LayerYear(layer), losses, allowedEvents(prepared, layer), null);
+    for (let n = 0; n < years.paying; n += 1) {
+      const state = years.state[n] ?? 0;
+      bookLoss[state] = (bookLoss[state] ?? 0) + house * ((years.payoff[n] ?? 0) * cost - premium * (years.reinstatement[n] ?? 0));
+    }
   });
 }
 
@@ -42,7 +44,7 @@ export function valueBlock(prepared: Prepared, laws: Laws, index: number, alloca
   for (const contract of prepared.book) {
     const losses = emptyLosses(drawLosses(scratch, contract, laws, index));
     pickLosses(losses, scratch, states);
-    addBookLoss(bookLoss, prepared, contract, losses);
+    addBookLoss(bookLoss, scratch.years, prepared, contract, losses);
   }
   const count = drawLosses(scratch, prepared.programme, laws, index);
   const { memory, block } = newBlock(index, states, count, allocate);

@@ -1,4 +1,4 @@
-import exp from '@stdlib/math-base-special-exp';
+import { exp } from '../math/exp';
 import { ln } from '../math/ln';
 import { demand } from '../model/refusal';
 

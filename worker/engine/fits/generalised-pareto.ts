@@ -1,4 +1,4 @@
-import exp from '@stdlib/math-base-special-exp';
+import { exp } from '../math/exp';
 import expm1 from '@stdlib/math-base-special-expm1';
 import ln from '@stdlib/math-base-special-ln';
 import log1p from '@stdlib/math-base-special-log1p';

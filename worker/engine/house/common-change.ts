@@ -30,6 +30,39 @@ export function addState(moments: CommonMoments, k: number, slope: number): void
   }
 }
 
+/** Adds the states of the list that are far from the floor: the same sums, kept in registers. */
+export function addStates(moments: CommonMoments, list: Uint32Array, house: { readonly capital: Float64Array; readonly slope: Float64Array; readonly nearBelow: number }): void {
+  const { capital, slope, nearBelow } = house;
+  let [a, b, c, d, e, f, g, h, m, n, o, p, x, y, z] = [0, 0, 0, 0, 0, 0, 0, 0, 0, 0, 0, 0, 0, 0, 0];
+  for (let i = 0; i < list.length; i += 1) {
+    const s = list[i] ?? 0;
+    const k = capital[s] ?? 0;
+    if (k < nearBelow) continue;
+    const inverse = 1 / k;
+    const first = slope[s] ?? 0;
+    let term = first;
+    a += term;
+    b += term *= inverse;
+    c += term *= inverse;
+    d += term *= inverse;
+    e += term *= inverse;
+    f += term *= inverse;
+    g += term *= inverse;
+    h += term *= inverse;
+    m += term *= inverse;
+    n += term *= inverse;
+    o += term *= inverse;
+    p += term *= inverse;
+    term = first * first;
+    x += term;
+    y += term *= inverse;
+    z += term *= inverse;
+  }
+  const { slopes, squares } = moments;
+  [a, b, c, d, e, f, g, h, m, n, o, p].forEach((sum, j) => (slopes[j] = (slopes[j] ?? 0) + sum));
+  [x, y, z].forEach((sum, j) => (squares[j] = (squares[j] ?? 0) + sum));
+}
+
 /** a + sign·b. */
 export function combined(a: CommonMoments, b: CommonMoments, sign: 1 | -1): CommonMoments {
   return {

@@ -1,4 +1,4 @@
-import { addState, combined, commonGain, commonSquares, noMoments, seriesHolds, type CommonMoments } from './common-change';
+import { addStates, combined, commonGain, commonSquares, noMoments, seriesHolds, type CommonMoments } from './common-change';
 import type { House } from './house';
 import { slopeAfter, utilityGainFrom } from './utility';
 
@@ -13,12 +13,8 @@ export class IdleStates {
     private readonly house: House,
     private readonly paying: Uint32Array,
   ) {
-    const { capital, slope, nearBelow } = house;
     const far = noMoments();
-    for (const s of paying) {
-      const k = capital[s] ?? 0;
-      if (k >= nearBelow) addState(far, k, slope[s] ?? 0);
-    }
+    addStates(far, paying, house);
     this.moments = combined(house.common, far, -1);
     this.near = without(house.near, paying);
   }

@@ -1,4 +1,4 @@
-import exp from '@stdlib/math-base-special-exp';
+import { exp } from '../math/exp';
 import expm1 from '@stdlib/math-base-special-expm1';
 import log1p from '@stdlib/math-base-special-log1p';
 import { ln } from '../math/ln';
@@ -40,10 +40,15 @@ export function utilityGainFrom(k: number, slope: number, change: number, prefer
     : floorSlope * (floor - k) + smoothGain(floor, floorSlope, end - floor, riskAversion);
 }
 
-/** u′(k + change), where the gain of that change is known: above the floor (k + change)^(1−γ) = k^(1−γ) + (1−γ)·gain. */
+const SMALL = 0.05;
+
+/**
+ * u′(k + change), where the gain of that change is known: above the floor (k + change)^(1−γ) = k^(1−γ) + (1−γ)·gain, which
+ * is exact to doubles for small changes.
+ */
 export function slopeAfter(k: number, slope: number, change: number, gain: number, preferences: Preferences): number {
   const { riskAversion, floor } = preferences;
   const end = k + change;
-  if (riskAversion === 1 || k < floor || end < floor) return marginalUtility(end, preferences);
+  if (riskAversion === 1 || k < floor || end < floor || change > SMALL * k || change < -SMALL * k) return marginalUtility(end, preferences);
   return (k * slope + (1 - riskAversion) * gain) / end;
 }

@@ -1,10 +1,6 @@
 import type { LayerTerms } from '../model/layer';
-import { inventedCatalogue, inventedLayer } from '../testing/invented';
+import { inventedLayer } from '../testing/invented';
 import { checkLayer } from '../model/check';
-import type { BlockLosses } from '../model/blocks';
-import { catalogueKeys } from '../random/occurrences';
-import { eachYear } from './each-year';
-import { allowedEvents } from './filter';
 import { LayerYear } from './layer-year';
 
 /** Loss and day since inception. */
@@ -302,86 +298,6 @@ describe('covers that inure to a layer (own arithmetic)', () => {
       inuringCovers: [{ limit: 4, attachment: 6, annualLimit: Infinity }],
     });
     expect(play(terms, monthly(20)).nets).toEqual([6]);
-  });
-});
-
-describe('filters by peril and region', () => {
-  const seed = '0123456789abcdef';
-  const keyed = (
-    lineage: string,
-    firstEvent: number,
-    perils: string[],
-    perilIndex: number[],
-    regionIndex: number[],
-  ) => {
-    const catalogue = {
-      ...inventedCatalogue(perilIndex.length, 1, lineage),
-      perils,
-      perilIndex: Uint16Array.from(perilIndex),
-      regions: ['north', 'south'],
-      regionIndex: Uint16Array.from(regionIndex),
-    };
-    return { catalogue, keys: catalogueKeys(catalogue, seed), firstEvent, rate: catalogue.ratePerYear };
-  };
-  const catalogues = [
-    keyed('first', 0, ['wind', 'quake'], [0, 0, 1, 1], [0, 1, 0, 1]),
-    // Another order of names: a filter goes by name.
-    keyed('second', 4, ['quake', 'wind'], [0, 1], [1, 1]),
-  ];
-  const allowed = (over: Partial<LayerTerms>): number[] | null => {
-    const found = allowedEvents({ catalogues, events: 6 }, layer(5, 10, over));
-    return found === null ? null : [...found];
-  };
-
-  it.each([
-    ['nothing said', {}, null],
-    ['a peril', { perils: ['wind'] }, [1, 1, 0, 0, 0, 1]],
-    ['two perils', { perils: ['quake', 'wind'] }, [1, 1, 1, 1, 1, 1]],
-    ['a region', { regions: ['south'] }, [0, 1, 0, 1, 1, 1]],
-    ['both', { perils: ['quake'], regions: ['south'] }, [0, 0, 0, 1, 1, 0]],
-    ['what no catalogue has', { perils: ['hail'] }, [0, 0, 0, 0, 0, 0]],
-    ['an empty list', { regions: [] }, [0, 0, 0, 0, 0, 0]],
-  ])('cover the events of both catalogues: %s', (_name, over, expected) =>
-    expect(allowed(over)).toEqual(expected),
-  );
-
-  /** Year 3: wind 14, quake 30, wind 13; year 7: quake 30 alone. */
-  const losses: BlockLosses = {
-    count: 4,
-    state: Uint16Array.of(3, 3, 3, 7),
-    event: Uint32Array.of(0, 2, 1, 3),
-    day: Float64Array.of(10, 20, 30, 40),
-    loss: Float64Array.of(14, 30, 13, 30),
-  };
-  const years = (terms: LayerTerms): { sums: object; counts: number[]; told: number[][] } => {
-    const told: number[][] = [];
-    const counts = new Float64Array(losses.count);
-    const sums = eachYear(
-      new LayerYear(terms),
-      losses,
-      allowedEvents({ catalogues, events: 6 }, terms),
-      counts,
-      (...year) => told.push(year),
-    );
-    return { sums, counts: [...counts], told };
-  };
-
-  it('leave out of a year what is not covered (own arithmetic)', () => {
-    expect(years(layer(5, 10, { perils: ['wind'] }))).toEqual({
-      sums: { sum: 7, squares: 49 },
-      counts: [4, 0, 3, 0],
-      told: [[3, 7, 1, 7, 0, 3]],
-    });
-    expect(years(layer(5, 10)).told).toEqual([
-      [3, 10, 1, 12, 0, 3],
-      [7, 5, 1, 5, 3, 4],
-    ]);
-  });
-
-  it('keep what is not covered from qualifying as an event', () => {
-    const terms = layer(5, 10, { form: { kind: 'nth event', first: 2, qualifying: 10 } });
-    expect(years({ ...terms, perils: ['wind'] }).counts).toEqual([0, 0, 3, 0]);
-    expect(years(terms).counts).toEqual([0, 5, 3, 0]);
   });
 });
 

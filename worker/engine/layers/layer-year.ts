@@ -4,6 +4,13 @@ import { reinstatementShare, yearlyPayoff, type AnnualTerms } from './payoff';
 
 const DAYS = 365;
 
+/** A plain excess of loss, whose occurrences need nothing of one another. */
+export interface PlainExcess {
+  readonly limit: number;
+  readonly attachment: number;
+  readonly quotaShareKept: number;
+}
+
 /**
  * One layer through one year, occurrence by occurrence in order of day: what every price is made of, and what explains it.
  * `begin`, then `take` each occurrence, then read `payoff` (Z) and `reinstatement` (ρ).
@@ -19,7 +26,8 @@ export class LayerYear {
   private readonly covers: readonly InuringCover[];
   private readonly coversPaid: Float64Array;
   private readonly proRataTime: boolean;
-  private readonly plain: boolean;
+  /** Terms of a layer in which an occurrence counts for itself alone; null for any other. */
+  readonly plain: PlainExcess | null;
   /** Loss of the last occurrence after quota share and inuring covers. */
   net = 0;
   /** What occurrences counted for before annual terms, summed. */
@@ -36,7 +44,8 @@ export class LayerYear {
     this.covers = terms.inuringCovers ?? [];
     this.coversPaid = new Float64Array(this.covers.length);
     this.proRataTime = terms.reinstatedProRataTime === true;
-    this.plain = this.form.kind === 'excess' && this.covers.length === 0 && !this.proRataTime;
+    const plain = this.form.kind === 'excess' && this.covers.length === 0 && !this.proRataTime;
+    this.plain = plain ? { limit: terms.limit, attachment: terms.attachment, quotaShareKept: this.quotaShareKept } : null;
     this.reach = reachOf(this.form, terms.attachment, this.quotaShareKept, this.covers.length > 0);
     // An aggregate excess attaches to the year's sum as an annual deductible does.
     this.annual = this.form.kind === 'aggregate' ? { ...terms, annualDeductible: terms.annualDeductible + terms.attachment } : terms;
@@ -58,7 +67,7 @@ export class LayerYear {
    */
   take(loss: number, day: number): number {
     let net = loss * this.quotaShareKept;
-    if (!this.plain) net = this.afterCovers(net);
+    if (this.plain === null) net = this.afterCovers(net);
     this.net = net;
     const counted = countedLoss(net, this.form, this.limit, this.attachment, this.qualified);
     this.summed += counted;

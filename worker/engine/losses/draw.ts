@@ -1,4 +1,4 @@
-import exp from '@stdlib/math-base-special-exp';
+import { exp } from '../math/exp';
 import { normalQuantile } from '../math/normal';
 import type { PreparedTable } from '../model/prepare';
 import { PURPOSE } from '../random/keys';

@@ -1,4 +1,4 @@
-import exp from '@stdlib/math-base-special-exp';
+import { exp } from '../math/exp';
 import log1p from '@stdlib/math-base-special-log1p';
 import { betaAtLogit, betaCdf, betaLaw, betaQuantile, logitStart, type BetaLaw } from '../math/beta';
 import { ln } from '../math/ln';

@@ -1,5 +1,5 @@
 import betaln from '@stdlib/math-base-special-betaln';
-import exp from '@stdlib/math-base-special-exp';
+import { exp } from './exp';
 import log1p from '@stdlib/math-base-special-log1p';
 import { ln } from './ln';
 
@@ -115,46 +115,54 @@ export function logitStart(law: BetaLaw): LogitStart {
 
 const MOST_STEPS = 60;
 
+/** Steps end once the last one was so small that the next would change nothing that is wanted: Halley's error is of its cube. */
+export const EXACT = 1e-4;
+
 /**
- * Logit of a beta quantile at a normal score, by Newton's method on the logarithm of the smaller tail in logit space. The
+ * Logit of a beta quantile at a normal score, by Halley's method on the logarithm of the smaller tail in logit space. The
  * logit of a beta variable has a log-concave density, so both tails are log-concave in it (Bagnoli and Bergstrom 2005,
- * Economic Theory 26): the steps come in monotonically from a start on the outer side and cannot run away.
+ * Economic Theory 26): the steps come in from a start on the outer side; one that leaves the interval in which the quantile
+ * is known to lie is halved instead.
  * @param score normal score s; the quantile is at Φ(s)
  * @param logTail ln Φ(−|s|), the smaller tail
  * @param guess where to start
  * @param start from `logitStart` of the same law: where to go back to from a point at which the tail vanishes
- * @returns the logit, absolute error about 1e-12, and there the density of the logit
+ * @param last size of the step, in units over which the tail changes, after which no other is taken
+ * @returns the logit, relative error of the tail about last³, and there the density of the logit
  */
-export function betaLogitAtScore(law: BetaLaw, score: number, logTail: number, guess: number, start: LogitStart): { logit: number; density: number } {
+export function betaLogitAtScore(law: BetaLaw, score: number, logTail: number, guess: number, start: LogitStart, last: number): { logit: number; density: number } {
   const low = score <= 0;
   const sign = low ? 1 : -1;
   // Mirrored, the upper tail is the lower one of the law with its shapes exchanged.
   const mirrored: BetaLaw = low ? law : { a: law.b, b: law.a, logBeta: law.logBeta };
+  const shapes = mirrored.a + mirrored.b;
   // A concave function lies below its asymptote, ln P(B ≤ x) ≤ a·y − ln(a·B(a, b)), whose root is thus left of the quantile.
   const asymptote = (logTail + ln(mirrored.a) + mirrored.logBeta) / mirrored.a;
   let y = sign * guess;
   if (!(y > asymptote)) y = asymptote;
   let density = 0;
-  // Between these the quantile is known to lie; a step that leaves them, which only laws far from normal make, is halved instead.
-  let [below, above] = [-Infinity, Infinity];
-  const halfWay = (): number => 0.5 * ((below > -Infinity ? below : y) + (above < Infinity ? above : sign * start.mean));
+  let below = -Infinity;
+  let above = Infinity;
   for (let step = 0; step < MOST_STEPS; step += 1) {
     const at = betaAtLogit(mirrored, y);
     const logLower = at.lower > 0 ? ln(at.lower) : -Infinity;
     if (logLower < logTail) below = y;
     else above = y;
-    const move = ((logLower - logTail) * at.lower) / at.slope;
-    if (!(at.lower > 0 && at.slope > 0 && y - move >= below - 1e-7 && y - move <= above + 1e-7)) {
-      y = halfWay();
+    const x = 1 / (1 + exp(-y));
+    // First and second derivative of the logarithm of the tail: r = g/p and r·(a − (a + b)·x − r).
+    const rate = at.slope / at.lower;
+    const pull = mirrored.a - shapes * x;
+    const newton = (logLower - logTail) / rate;
+    const bend = newton * (pull - rate);
+    const move = newton / (1 - 0.5 * bend);
+    if (!(at.lower > 0 && at.slope > 0 && bend < 1 && y - move >= below - 1e-7 && y - move <= above + 1e-7)) {
+      y = 0.5 * ((below > -Infinity ? below : y) + (above < Infinity ? above : sign * start.mean));
       continue;
     }
     y -= move;
-    density = at.slope;
-    if (move < 1e-7 && move > -1e-7) {
-      // To first order the density moves with its logarithm's slope, a − (a + b)·x.
-      density *= 1 - move * (mirrored.a - (mirrored.a + mirrored.b) / (1 + exp(-y)));
-      break;
-    }
+    // The density's logarithm changes by pull and bends by −(a + b)·x·(1 − x).
+    density = at.slope * exp(-move * pull - 0.5 * move * move * shapes * x * (1 - x));
+    if (bend < last && bend > -last && newton * rate < last && newton * rate > -last) break;
   }
   return { logit: sign * y, density };
 }
@@ -167,6 +175,6 @@ export function betaLogitAtScore(law: BetaLaw, score: number, logTail: number, g
  */
 export function betaQuantile(law: BetaLaw, score: number, tail: number, start: LogitStart): number {
   if (tail <= 0) return score <= 0 ? 0 : 1;
-  const { logit } = betaLogitAtScore(law, score, ln(tail), start.mean + start.sd * score, start);
+  const { logit } = betaLogitAtScore(law, score, ln(tail), start.mean + start.sd * score, start, EXACT);
   return 1 / (1 + exp(-logit));
 }

@@ -1,5 +1,5 @@
 import erfc from '@stdlib/math-base-special-erfc';
-import exp from '@stdlib/math-base-special-exp';
+import { exp } from './exp';
 import { ln } from './ln';
 
 const SQRT_HALF = Math.sqrt(0.5);

@@ -1,9 +1,9 @@
 import type { House } from '../house/house';
-import { yearlyCover } from '../layers/payoff';
 import type { HouseBasis } from '../model/inputs';
 import type { Deal } from '../premiums/deal';
 import type { MarginalPremium } from '../premiums/marginal';
-import { estimateOf, sumByBlock, type Estimate } from './sums';
+import type { PayingSums } from './paying-sums';
+import { estimateOf, type Estimate } from './sums';
 
 /** Fewer effective states than this and the price is called thin. */
 export const THIN_STATES = 2500;
@@ -70,36 +70,27 @@ export function pricedProbability(house: House, slopes: number, squares: number)
   return { value, standardError: Math.sqrt(Math.max(scatter, 0)) / house.slopeSum };
 }
 
+/**
+ * Mean over all states, its error and the deviation, from sums over the states that are not 0. A yearly figure's deviation is
+ * never small beside its mean here, so that no digits are lost between the squares.
+ */
+function estimateOver(states: number, sum: number, squares: number): Estimate & { readonly deviation: number } {
+  return estimateOf(states, sum, squares - (sum * sum) / states);
+}
+
 /** What a layer's payoff looks like over the states, and how many of them carry its price: 1/Σw², w their shares of E[m·Z]. */
-export function payoffMeasures(deal: Deal, house: House): PayoffMeasures {
-  const { layer, paying } = deal;
-  const { blockStart, state, payoff, reinstatement } = paying;
-  const { states, slope } = house;
-  const cover = yearlyCover(layer);
-  const n = state.length;
-  const overPaying = (term: (i: number) => number): number => sumByBlock(blockStart, term);
-  const estimate = (column: Float64Array) => {
-    const sum = overPaying((i) => column[i] ?? 0);
-    const mean = sum / states;
-    const scatter = overPaying((i) => ((column[i] ?? 0) - mean) * ((column[i] ?? 0) - mean)) + (states - n) * mean * mean;
-    return estimateOf(states, sum, scatter);
-  };
-  const loss = estimate(payoff);
-  const slopeOf = (i: number): number => slope[state[i] ?? 0] ?? 0;
-  const total = overPaying((i) => slopeOf(i) * (payoff[i] ?? 0));
-  const squares = overPaying((i) => {
-    const weighted = slopeOf(i) * (payoff[i] ?? 0);
-    return weighted * weighted;
-  });
-  const effectiveStates = squares === 0 ? 0 : (total * total) / squares;
-  const { value, standardError } = estimate(reinstatement);
+export function payoffMeasures(deal: Deal, sums: PayingSums, house: House): PayoffMeasures {
+  const { states } = house;
+  const loss = estimateOver(states, sums.payoff, sums.payoffSquares);
+  const back = estimateOver(states, sums.reinstatement, sums.reinstatementSquares);
+  const effectiveStates = sums.pricedPayoffSquares === 0 ? 0 : (sums.pricedPayoff * sums.pricedPayoff) / sums.pricedPayoffSquares;
   return {
     expectedLoss: { value: loss.value, standardError: loss.standardError },
     standardDeviation: loss.deviation,
-    attachmentProbability: probabilityOf(n, states),
-    exhaustionProbability: probabilityOf(overPaying((i) => ((payoff[i] ?? 0) >= cover ? 1 : 0)), states),
-    pricedAttachmentProbability: pricedProbability(house, overPaying(slopeOf), overPaying((i) => slopeOf(i) * slopeOf(i))),
-    expectedReinstatement: { value, standardError },
+    attachmentProbability: probabilityOf(deal.paying.state.length, states),
+    exhaustionProbability: probabilityOf(sums.exhausted, states),
+    pricedAttachmentProbability: pricedProbability(house, sums.slope, sums.slopeSquares),
+    expectedReinstatement: { value: back.value, standardError: back.standardError },
     effectiveStates,
     thin: effectiveStates < THIN_STATES,
   };

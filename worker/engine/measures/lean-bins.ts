@@ -1,4 +1,4 @@
-import exp from '@stdlib/math-base-special-exp';
+import { exp } from '../math/exp';
 import type { House } from '../house/house';
 import { ln } from '../math/ln';
 import { selectRanks } from './select';

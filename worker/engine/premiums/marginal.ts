@@ -1,5 +1,6 @@
 import type { House } from '../house/house';
-import { sumByBlock, type Estimate } from '../measures/sums';
+import type { PayingSums } from '../measures/paying-sums';
+import type { Estimate } from '../measures/sums';
 import type { Deal } from './deal';
 
 /** The marginal premium taken apart, for 100%, contract currency. The parts from riskless loss to reinstatements add up to it. */
@@ -22,28 +23,24 @@ export interface MarginalPremium {
 }
 
 /** What the marginal premium needs of the house. */
-export type HungryStates = Pick<House, 'states' | 'slope' | 'discount' | 'sureValue' | 'slopeSquares' | 'slopeSum'>;
+export type HungryStates = Pick<House, 'states' | 'discount' | 'sureValue' | 'slopeSquares' | 'slopeSum'>;
 
 /**
  * Premium of a small line: P = (E[m·Z]·(1 + a) + F/w) / ((1 − q) + (1 − q_R)·E[m·ρ]). The standard error holds E[m] at the
  * riskless price of a sure unit, as anchoring does, by the influence of each state on the ratio.
  */
-export function marginalPremium(deal: Deal, house: HungryStates): MarginalPremium {
-  const { layer, paying } = deal;
-  const { blockStart, state, payoff, reinstatement } = paying;
-  const { slope, discount, states, sureValue } = house;
-  const hunger = (i: number): number => discount * (slope[state[i] ?? 0] ?? 0);
-  const payoffValue = sumByBlock(blockStart, (i) => hunger(i) * (payoff[i] ?? 0)) / states;
-  const reinstatementShareValue = sumByBlock(blockStart, (i) => hunger(i) * (reinstatement[i] ?? 0)) / states;
-  const meanPayoff = sumByBlock(blockStart, (i) => payoff[i] ?? 0) / states;
+export function marginalPremium(deal: Deal, sums: PayingSums, house: HungryStates): MarginalPremium {
+  const { discount, states, sureValue } = house;
+  const payoffValue = (discount * sums.pricedPayoff) / states;
+  const reinstatementShareValue = (discount * sums.pricedReinstatement) / states;
   const cost = 1 + deal.lossAdjustment;
-  const fixed = deal.fixedExpense / layer.line;
+  const fixed = deal.fixedExpense / deal.layer.line;
   const kept = 1 - deal.reinstatementDeductions;
   const denominator = 1 - deal.deductions + kept * reinstatementShareValue;
   const value = (payoffValue * cost + fixed) / denominator;
-  const risklessLoss = sureValue * meanPayoff;
+  const risklessLoss = (sureValue * sums.payoff) / states;
   return {
-    premium: { value, standardError: errorOf(deal, house, value, (payoffValue * cost - value * kept * reinstatementShareValue) / sureValue, denominator) },
+    premium: { value, standardError: errorOf(sums, house, { cost, back: value * kept }) / denominator },
     payoffValue,
     reinstatementShareValue,
     risklessLoss,
@@ -55,17 +52,15 @@ export function marginalPremium(deal: Deal, house: HungryStates): MarginalPremiu
   };
 }
 
-/** A state moves the ratio by m·(net − slope)/denominator; where the layer does not pay, net is 0. */
-function errorOf(deal: Deal, house: HungryStates, premium: number, slope: number, denominator: number): number {
-  const { blockStart, state, payoff, reinstatement } = deal.paying;
+/** Standard error of E[m·(net − λ)], net = cost·Z − back·ρ and λ its mean under price: what a state adds to it is 0 in the mean. */
+function errorOf(sums: PayingSums, house: HungryStates, { cost, back }: { cost: number; back: number }): number {
   const { discount, states } = house;
-  const cost = 1 + deal.lossAdjustment;
-  const kept = 1 - deal.reinstatementDeductions;
-  const net = (i: number): number => (payoff[i] ?? 0) * cost - premium * kept * (reinstatement[i] ?? 0);
-  const hunger = (i: number): number => discount * (house.slope[state[i] ?? 0] ?? 0);
-  const all = slope * slope * discount * discount * house.slopeSquares;
-  const squares = all + sumByBlock(blockStart, (i) => hunger(i) * hunger(i) * net(i) * (net(i) - 2 * slope));
-  const sum = sumByBlock(blockStart, (i) => hunger(i) * net(i)) - slope * discount * house.slopeSum;
-  const variance = Math.max(squares - (sum * sum) / states, 0) / (states - 1) / (denominator * denominator);
-  return Math.sqrt(variance / states);
+  const mean = (cost * sums.pricedPayoff - back * sums.pricedReinstatement) / house.slopeSum;
+  const squares =
+    cost * cost * sums.pricedPayoffSquares -
+    2 * cost * back * sums.squaredCross +
+    back * back * sums.pricedReinstatementSquares -
+    2 * mean * (cost * sums.squaredPayoff - back * sums.squaredReinstatement) +
+    mean * mean * house.slopeSquares;
+  return (discount * Math.sqrt(Math.max(squares, 0) / (states - 1))) / Math.sqrt(states);
 }

@@ -1,7 +1,9 @@
 import type { House } from '../house/house';
 import { IdleStates } from '../house/idle-states';
-import { slopeAfter, utilityGainFrom, type Preferences } from '../house/utility';
-import { sumByBlock, type Estimate } from '../measures/sums';
+import { SmallGain } from '../house/small-gain';
+import { slopeAfter } from '../house/utility';
+import type { LayerStates } from '../layers/layer-states';
+import type { Estimate } from '../measures/sums';
 import { capitalEffect, type CapitalEffect, type Deal } from './deal';
 
 export interface ProgrammeWalkAway {
@@ -17,6 +19,12 @@ interface PayingStates {
   readonly places: readonly Uint32Array[];
 }
 
+function placesOf(state: Uint32Array, placeOf: Uint32Array): Uint32Array {
+  const places = new Uint32Array(state.length);
+  for (let i = 0; i < state.length; i += 1) places[i] = placeOf[state[i] ?? 0] ?? 0;
+  return places;
+}
+
 function payingStates(deals: readonly Deal[], states: number): PayingStates {
   const placeOf = new Uint32Array(states);
   for (const { paying } of deals) for (const s of paying.state) placeOf[s] = 1;
@@ -30,20 +38,7 @@ function payingStates(deals: readonly Deal[], states: number): PayingStates {
     placeOf[s] = at;
     at += 1;
   }
-  return { state, places: deals.map(({ paying }) => paying.state.map((s) => placeOf[s] ?? 0)) };
-}
-
-const TINY_CHANGE = 1e-7;
-
-/**
- * ∫₀¹ u′(k + t·change) dt = (u(k + change) − u(k))/change: the mean marginal utility along the programme scaled from 0 to
- * 1. For changes so small that the quotient would lose digits, by its second-order expansion.
- */
-function meanSlope(k: number, slope: number, change: number, preferences: Preferences): number {
-  if (change < TINY_CHANGE && change > -TINY_CHANGE && k - TINY_CHANGE > preferences.floor) {
-    return slope * (1 - (0.5 * preferences.riskAversion * change) / k);
-  }
-  return change === 0 ? slope : utilityGainFrom(k, slope, change, preferences) / change;
+  return { state, places: deals.map(({ paying }) => placesOf(paying.state, placeOf)) };
 }
 
 /** Capital change of all deals together in each paying state. */
@@ -64,6 +59,23 @@ function changes(into: Float64Array, deals: readonly Deal[], effects: readonly C
   return common;
 }
 
+/** Σ weight·Z and Σ weight·ρ over a deal's paying states, within each block and the blocks' sums in order. */
+function weighted(weight: Float64Array, places: Uint32Array, { blockStart, payoff, reinstatement }: LayerStates): { payoff: number; reinstatement: number } {
+  let [totalPayoff, totalReinstatement] = [0, 0];
+  for (let b = 0; b + 1 < blockStart.length; b += 1) {
+    let [paid, reinstated] = [0, 0];
+    const to = blockStart[b + 1] ?? 0;
+    for (let i = blockStart[b] ?? 0; i < to; i += 1) {
+      const w = weight[places[i] ?? 0] ?? 0;
+      paid += w * (payoff[i] ?? 0);
+      reinstated += w * (reinstatement[i] ?? 0);
+    }
+    totalPayoff += paid;
+    totalReinstatement += reinstated;
+  }
+  return { payoff: totalPayoff, reinstatement: totalReinstatement };
+}
+
 const MOST_ROUNDS = 60;
 
 /**
@@ -73,27 +85,32 @@ const MOST_ROUNDS = 60;
  * the sum is E u(k + change) − E u(k), the parts add up to a programme on which the house neither gains nor loses.
  */
 export function programmeWalkAway(deals: readonly Deal[], house: House, start: readonly number[]): ProgrammeWalkAway {
-  const { capital, slope, preferences, sureValue } = house;
+  const { capital, slope, sureValue } = house;
   const paying = payingStates(deals, house.states);
   const idle = new IdleStates(house, paying.state);
   const effects = deals.map((deal) => capitalEffect(deal, sureValue));
   const change = new Float64Array(paying.state.length);
   const weight = new Float64Array(paying.state.length);
-  const everyState = Uint32Array.of(0, weight.length);
+  const series = new SmallGain(house.preferences);
   let premiums = [...start];
   for (let round = 0; round < MOST_ROUNDS; round += 1) {
     const common = changes(change, deals, effects, paying, premiums);
+    // ∫₀¹ u′(k + t·change) dt = (u(k + change) − u(k))/change: the mean marginal utility along the programme scaled from 0 to 1.
+    let total = 0;
     for (let i = 0; i < weight.length; i += 1) {
       const s = paying.state[i] ?? 0;
-      weight[i] = meanSlope(capital[s] ?? 0, slope[s] ?? 0, change[i] ?? 0, preferences);
+      const moved = change[i] ?? 0;
+      const before = slope[s] ?? 0;
+      const mean = moved === 0 ? before : series.at(capital[s] ?? 0, before, moved) / moved;
+      weight[i] = mean;
+      total += mean;
     }
     const rest = idle.gain(common);
-    const sure = sumByBlock(everyState, (i) => weight[i] ?? 0) + (common === 0 ? rest.slope : rest.gain / common);
+    const sure = total + (common === 0 ? rest.slope : rest.gain / common);
     const next = deals.map((deal, l) => {
-      const places = paying.places[l] ?? new Uint32Array(0);
-      const { blockStart, payoff, reinstatement } = deal.paying;
-      const paid = sumByBlock(blockStart, (i) => (weight[places[i] ?? 0] ?? 0) * (payoff[i] ?? 0)) / sure;
-      const reinstated = sumByBlock(blockStart, (i) => (weight[places[i] ?? 0] ?? 0) * (reinstatement[i] ?? 0)) / sure;
+      const sums = weighted(weight, paying.places[l] ?? new Uint32Array(0), deal.paying);
+      const paid = sums.payoff / sure;
+      const reinstated = sums.reinstatement / sure;
       const cost = paid * (1 + deal.lossAdjustment) + deal.fixedExpense / sureValue / deal.layer.line;
       return cost / ((1 - deal.deductions) / sureValue + (1 - deal.reinstatementDeductions) * reinstated);
     });
@@ -114,16 +131,19 @@ function errorOfScale(house: House, deals: readonly Deal[], effects: readonly Ca
   const rate = new Float64Array(paying.state.length).fill(income);
   deals.forEach((deal, l) => {
     const back = (effects[l]?.ofReinstatement ?? 0) * (premiums[l] ?? 0);
-    paying.places[l]?.forEach((at, i) => {
+    const places = paying.places[l] ?? new Uint32Array(0);
+    for (let i = 0; i < places.length; i += 1) {
+      const at = places[i] ?? 0;
       rate[at] = (rate[at] ?? 0) + back * (deal.paying.reinstatement[i] ?? 0);
-    });
+    }
   });
   const rest = idle.gain(common);
+  const series = new SmallGain(preferences);
   let [squares, derivative] = [rest.squares, income * rest.slope];
   for (let i = 0; i < change.length; i += 1) {
     const s = paying.state[i] ?? 0;
     const [k, before, moved] = [capital[s] ?? 0, slope[s] ?? 0, change[i] ?? 0];
-    const gained = utilityGainFrom(k, before, moved, preferences);
+    const gained = series.at(k, before, moved);
     squares += gained * gained;
     derivative += (rate[i] ?? 0) * slopeAfter(k, before, moved, gained, preferences);
   }

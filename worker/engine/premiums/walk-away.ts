@@ -1,13 +1,14 @@
 import type { House } from '../house/house';
 import { IdleStates } from '../house/idle-states';
-import { slopeAfter, utilityGainFrom } from '../house/utility';
+import { SmallGain } from '../house/small-gain';
+import { slopeAfter } from '../house/utility';
 import type { Estimate } from '../measures/sums';
 import { capitalEffect, type Deal } from './deal';
 
 const MOST_STEPS = 100;
 
 /** Σ [u(k + change) − u(k)] over all states, its derivative in the premium, and the sum of squared gains. */
-function totalGain(deal: Deal, house: House, idle: IdleStates, premium: number): { gain: number; slope: number; squares: number } {
+function totalGain(deal: Deal, house: House, idle: IdleStates, series: SmallGain, premium: number): { gain: number; slope: number; squares: number } {
   const { blockStart, state, payoff, reinstatement } = deal.paying;
   const { capital, slope: slopes, preferences } = house;
   const effect = capitalEffect(deal, house.sureValue);
@@ -21,7 +22,7 @@ function totalGain(deal: Deal, house: House, idle: IdleStates, premium: number):
       const before = slopes[s] ?? 0;
       const rate = effect.ofPremium + effect.ofReinstatement * (reinstatement[i] ?? 0);
       const change = premium * rate + effect.ofPayoff * (payoff[i] ?? 0) + effect.fixed;
-      const gained = utilityGainFrom(k, before, change, preferences);
+      const gained = series.at(k, before, change);
       blockGain += gained;
       blockSquares += gained * gained;
       blockSlope += rate * slopeAfter(k, before, change, gained, preferences);
@@ -42,9 +43,10 @@ function totalGain(deal: Deal, house: House, idle: IdleStates, premium: number):
  */
 export function walkAwayPremium(deal: Deal, house: House, marginal: number): Estimate {
   const idle = new IdleStates(house, deal.paying.state);
+  const series = new SmallGain(house.preferences);
   let premium = marginal;
   for (let step = 0; ; step += 1) {
-    const at = totalGain(deal, house, idle, premium);
+    const at = totalGain(deal, house, idle, series, premium);
     const move = at.gain / at.slope;
     premium -= move;
     // Newton's error after a step is of the order of the step's square.

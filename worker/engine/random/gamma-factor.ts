@@ -1,4 +1,4 @@
-import exp from '@stdlib/math-base-special-exp';
+import { exp } from '../math/exp';
 import { ln } from '../math/ln';
 import { normalQuantile } from '../math/normal';
 import { PURPOSE } from './keys';

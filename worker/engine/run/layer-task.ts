@@ -5,8 +5,11 @@ import { allowedEvents } from '../layers/filter';
 import { layerStates, type LayerStates } from '../layers/layer-states';
 import { contributors, type Contributors } from '../measures/contributors';
 import { payoffMeasures, type PayoffMeasures } from '../measures/layer';
+import { payingSums } from '../measures/paying-sums';
+import { yearlyCover } from '../layers/payoff';
 import { DECILES, lensEdges } from '../measures/lean-bins';
 import type { PartSums } from '../measures/lens';
+import { BLOCK_STATES } from '../model/inputs';
 import { EngineInputError } from '../model/refusal';
 import { dealOf, type Deal } from '../premiums/deal';
 import { marginalPremium, type MarginalPremium } from '../premiums/marginal';
@@ -52,23 +55,29 @@ export function layerTask(workspace: Workspace, index: number): LayerPart {
   const lens = emptySums(lensEdges(house.states).length);
   const byEvent = new Float64Array(prepared.events);
   const { decile, lensBin } = memory.columns;
-  const paying = layerStates(layer, workspace.allBlocks(), allowedEvents(prepared, layer), allocate, (state, payoff, counted, counts, block, from, to) => {
-    const priced = hungerAt(house, state) * payoff;
-    add(deciles, decile[state] ?? 0, payoff, priced);
-    add(lens, lensBin[state] ?? 0, payoff, priced);
-    // A state's payoff is shared among its occurrences in proportion to what they counted for.
-    const each = priced / counted;
-    for (let i = from; i < to; i += 1) {
-      const own = counts[i] ?? 0;
-      const event = block.losses.event[i] ?? 0;
-      if (own > 0) byEvent[event] = (byEvent[event] ?? 0) + each * own;
+  const paying = layerStates(layer, workspace.allBlocks(), allowedEvents(prepared, layer), allocate, (block, years, counts) => {
+    const { event } = block.losses;
+    for (let n = 0; n < years.paying; n += 1) {
+      const state = block.index * BLOCK_STATES + (years.state[n] ?? 0);
+      const payoff = years.payoff[n] ?? 0;
+      const priced = hungerAt(house, state) * payoff;
+      add(deciles, decile[state] ?? 0, payoff, priced);
+      add(lens, lensBin[state] ?? 0, payoff, priced);
+      // A state's payoff is shared among its occurrences in proportion to what they counted for.
+      const each = priced / (years.counted[n] ?? 1);
+      const to = years.to[n] ?? 0;
+      for (let i = years.from[n] ?? 0; i < to; i += 1) {
+        const own = counts[i] ?? 0;
+        if (own > 0) byEvent[event[i] ?? 0] = (byEvent[event[i] ?? 0] ?? 0) + each * own;
+      }
     }
   });
   const deal = dealAt(workspace, index, paying);
-  const marginal = marginalPremium(deal, house);
+  const sums = payingSums(paying, house.slope, yearlyCover(layer));
+  const marginal = marginalPremium(deal, sums, house);
   return {
     paying,
-    measures: payoffMeasures(deal, house),
+    measures: payoffMeasures(deal, sums, house),
     marginal,
     walkAway: walkAwayPremium(deal, house, marginal.premium.value),
     contributors: contributors(prepared, byEvent),

@@ -1,6 +1,6 @@
 import { yearlyCover } from '../layers/payoff';
 import { pricedProbability, probabilityOf, THIN_STATES, type PayoffMeasures } from '../measures/layer';
-import { estimateOf, sumByBlock, type Estimate } from '../measures/sums';
+import { estimateOf, type Estimate } from '../measures/sums';
 import { programmeWalkAway } from '../premiums/programme';
 import { EngineInputError } from '../model/refusal';
 import { dealAt } from './layer-task';
@@ -26,27 +26,35 @@ export function programmeTask(workspace: Workspace): ProgrammePart {
   const exhausted = new Uint8Array(states);
   for (const { layer, paying } of deals) {
     const cover = yearlyCover(layer);
-    paying.state.forEach((s, i) => {
+    for (let i = 0; i < paying.state.length; i += 1) {
+      const s = paying.state[i] ?? 0;
       const payoff = paying.payoff[i] ?? 0;
       total[s] = (total[s] ?? 0) + payoff;
       if (payoff >= cover) exhausted[s] = (exhausted[s] ?? 0) + 1;
-    });
+    }
   }
-  const whole = Uint32Array.of(0, states);
-  const sum = sumByBlock(whole, (s) => total[s] ?? 0);
-  const mean = sum / states;
-  const scatter = sumByBlock(whole, (s) => ((total[s] ?? 0) - mean) * ((total[s] ?? 0) - mean));
-  const { value, standardError, deviation } = estimateOf(states, sum, scatter);
-  const pays = (s: number): number => ((total[s] ?? 0) > 0 ? 1 : 0);
-  const priced = (s: number): number => (slope[s] ?? 0) * (total[s] ?? 0);
-  const [first, second] = [sumByBlock(whole, priced), sumByBlock(whole, (s) => priced(s) * priced(s))];
-  const effectiveStates = (first * first) / second;
+  let [sum, squares, pays, done, priced, pricedSquares, slopes, slopeSquares] = [0, 0, 0, 0, 0, 0, 0, 0];
+  for (let s = 0; s < states; s += 1) {
+    const z = total[s] ?? 0;
+    if (z === 0) continue;
+    const u = slope[s] ?? 0;
+    sum += z;
+    squares += z * z;
+    pays += 1;
+    if (exhausted[s] === deals.length) done += 1;
+    priced += u * z;
+    pricedSquares += u * z * (u * z);
+    slopes += u;
+    slopeSquares += u * u;
+  }
+  const { value, standardError, deviation } = estimateOf(states, sum, squares - (sum * sum) / states);
+  const effectiveStates = (priced * priced) / pricedSquares;
   return {
     expectedLoss: { value, standardError },
     standardDeviation: deviation,
-    attachmentProbability: probabilityOf(sumByBlock(whole, pays), states),
-    exhaustionProbability: probabilityOf(exhausted.reduce((n, layersDone) => n + (layersDone === deals.length ? 1 : 0), 0), states),
-    pricedAttachmentProbability: pricedProbability(house, sumByBlock(whole, (s) => pays(s) * (slope[s] ?? 0)), sumByBlock(whole, (s) => pays(s) * (slope[s] ?? 0) * (slope[s] ?? 0))),
+    attachmentProbability: probabilityOf(pays, states),
+    exhaustionProbability: probabilityOf(done, states),
+    pricedAttachmentProbability: pricedProbability(house, slopes, slopeSquares),
     effectiveStates,
     thin: effectiveStates < THIN_STATES,
     walkAway: walkAway.total,

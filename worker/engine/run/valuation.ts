@@ -1,5 +1,6 @@
 import type { ExplainedYear } from '../explain/explain';
 import type { House } from '../house/house';
+import type { LayerStates } from '../layers/layer-states';
 import { rateOnLine } from '../layers/payoff';
 import type { Contributors } from '../measures/contributors';
 import type { TailPoint } from '../measures/exceedance';
@@ -48,8 +49,8 @@ export interface Valuation {
     readonly tailAfter: readonly TailPoint[];
   };
   readonly selfCheck: SelfCheck;
-  /** k and then Z of each layer, one entry a state. */
-  readonly series: { readonly capital: Float64Array; readonly payoffs: readonly Float64Array[] };
+  /** k in every state, and where each layer pays. */
+  readonly series: { readonly capital: Float64Array; readonly paying: readonly LayerStates[] };
 }
 
 /** What does not depend on the layers. */
@@ -115,11 +116,12 @@ export function valuationOf(workspace: Workspace, found: Findings): Valuation {
     lens: leanLens(states, sureValue, bins, terms.layers.map(({ limit }, l) => ({ limit, sums: parts[l]?.lens ?? { payoff: new Float64Array(0), priced: new Float64Array(0) } }))),
     house: { discount, sureValue, risklessRate, largestSharpeRatio, floorShare, effectiveStates, netPremium, tailBefore: found.tailBefore, tailAfter: found.tailAfter },
     selfCheck: check,
-    series: { capital: new Float64Array(house.capital), payoffs: parts.map(({ paying }) => densePayoff(paying.state, paying.payoff, states)) },
+    series: { capital: house.capital, paying: parts.map(({ paying }) => paying) },
   };
 }
 
-function densePayoff(state: Uint32Array, payoff: Float64Array, states: number): Float64Array {
+/** Z of a layer in every state, paying or not. */
+export function payoffInEveryState({ state, payoff }: Pick<LayerStates, 'state' | 'payoff'>, states: number): Float64Array {
   const dense = new Float64Array(states);
   for (let i = 0; i < state.length; i += 1) dense[state[i] ?? 0] = payoff[i] ?? 0;
   return dense;

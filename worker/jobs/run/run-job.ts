@@ -1,7 +1,7 @@
 import type { Attempt, RunBlocks, RunDesk } from '../../../api/domain/run/run';
 import type { Notice } from '../../../api/domain/shared/stream';
 import type { Wake } from '../../../api/queue/port';
-import { EngineInputError, type Valuation, type ValuationInputs } from '../../engine';
+import { EngineInputError, payoffInEveryState, type Valuation, type ValuationInputs } from '../../engine';
 import { engineInputs } from './engine-inputs';
 import { beating, type Heart } from './heart';
 import { idOfAttempt, idOfPart, isLarge, partsOf, type Part } from './parts';
@@ -157,7 +157,7 @@ async function valueWhole(deps: RunJobDeps, attempt: Attempt, work: RunWork, kno
   const result = resultOf(valuation, work.terms, work.basis);
   const series = [
     { name: 'capital', values: valuation.series.capital },
-    ...valuation.series.payoffs.map((values, l) => ({ name: work.terms.layers[l]?.key ?? String(l), values })),
+    ...valuation.series.paying.map((paying, l) => ({ name: work.terms.layers[l]?.key ?? String(l), values: payoffInEveryState(paying, valuation.states) })),
   ];
   await heart.end();
   if (await deps.desk.succeed(attempt, { json: result, hash: resultHash(result, series), series })) await say('succeeded');
