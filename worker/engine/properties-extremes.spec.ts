@@ -79,8 +79,16 @@ const relative = (found: number, expected: number): number =>
   found === expected ? 0 : Math.abs(found - expected) / Math.max(Math.abs(found), Math.abs(expected));
 
 describe('whatever is in the domain', () => {
-  /** The seeds are told on failure: `extremeInputs(seed)` are the inputs. */
-  const SEEDS = fc.sample(fc.integer({ min: 1, max: 1_000_000 }), { numRuns: 160, seed: 110 });
+  /**
+   * The seeds are told on failure: `extremeInputs(seed)` are the inputs. First those that a longer search found wrong: a
+   * riskless rate that nothing tells, and programmes that can ruin the house.
+   */
+  const SEEDS = [
+    765_864,
+    712_482,
+    621_156,
+    ...fc.sample(fc.integer({ min: 1, max: 1_000_000 }), { numRuns: 50, seed: 110 }),
+  ];
   const found = SEEDS.map((seed) => {
     const inputs = extremeInputs(seed);
     return { seed, inputs, result: unlessRefused(inputs) };
@@ -90,7 +98,7 @@ describe('whatever is in the domain', () => {
   );
 
   it('is priced more often than it is refused, or nothing was tested', () =>
-    expect(priced.length).toBeGreaterThan(80));
+    expect(priced.length).toBeGreaterThan(0.5 * SEEDS.length));
 
   it('gives numbers everywhere in the result', () => {
     const bad = priced.flatMap(({ seed, valuation }) =>

@@ -1,5 +1,5 @@
 import fc from 'fast-check';
-import { value, type HouseBasis, type LayerTerms, type ValuationInputs } from '.';
+import { payoffInEveryState, value, type HouseBasis, type LayerTerms, type ValuationInputs } from '.';
 import { hungerOf, priceOf, pricedStates } from './house/state-prices';
 import { INVENTED_BASIS, inventedInputs, inventedLayer } from './testing/invented';
 
@@ -120,8 +120,8 @@ describe('the price of a layer', () => {
             inventedLayer('upper', second, attachment + first, terms),
             inventedLayer('joint', first + second, attachment, terms),
           ];
-          const { series, layers: found } = value(small(layers, { riskAversion }));
-          const [lower, upper, joint] = series.payoffs;
+          const { series, states, layers: found } = value(small(layers, { riskAversion }));
+          const [lower, upper, joint] = series.paying.map((paying) => payoffInEveryState(paying, states));
           joint?.forEach((z, s) => expectClose((lower?.[s] ?? 0) + (upper?.[s] ?? 0), z, 1e-9));
           const [a, b, c] = found.map((layer) => layer.marginalPremium.value);
           expectClose((a ?? 0) + (b ?? 0), c ?? 0, 1e-9);

@@ -1,6 +1,6 @@
 import { exp } from '../math/exp';
 import expm1 from '@stdlib/math-base-special-expm1';
-import ln from '@stdlib/math-base-special-ln';
+import { ln } from '../math/ln';
 import log1p from '@stdlib/math-base-special-log1p';
 import { demand } from '../model/refusal';
 

@@ -67,8 +67,11 @@ export function exceedanceOf(severity: Severity, threshold: number): { probabili
   return { probability: upper, score: lower <= 0.5 ? normalQuantile(lower) : -normalQuantile(upper) };
 }
 
-/** E[min(X, d)], exact: by the incomplete beta function, the normal law, or the mean itself. */
-export function limitedMean(severity: Severity, d: number): number {
+/**
+ * E[min(X, d)], exact: by the incomplete beta function, the normal law, or the mean itself.
+ * @param law that of a beta severity, where it is at hand
+ */
+export function limitedMean(severity: Severity, d: number, law?: BetaLaw): number {
   if (d <= 0) return 0;
   if (severity.kind === 'certain') return Math.min(severity.mean, d);
   if (severity.kind === 'lognormal') {
@@ -78,7 +81,7 @@ export function limitedMean(severity: Severity, d: number): number {
   if (d >= severity.exposed) return severity.mean;
   const x = d / severity.exposed;
   const { a } = severity;
-  const { lower, upper, slope } = betaAtLogit(betaLaw(a, severity.b), ln(x) - log1p(-x));
+  const { lower, upper, slope } = betaAtLogit(law ?? betaLaw(a, severity.b), ln(x) - log1p(-x));
   // I(a + 1, b) = I(a, b) − x^a·(1 − x)^b/(a·B(a, b)), by whichever of I and 1 − I is the smaller.
   const below = lower < upper ? lower - slope / a : 1 - upper - slope / a;
   return severity.mean * Math.max(below, 0) + d * upper;

@@ -1,3 +1,4 @@
+import { betaLaw } from '../math/beta';
 import { allowedEvents } from '../layers/filter';
 import { severityOfRow } from '../losses/laws';
 import { exceedanceOf, limitedMean, type Severity } from '../losses/severity';
@@ -60,11 +61,12 @@ export function exactMeans(prepared: Prepared, from: number, to: number): ExactM
       const rate = (table.home.rate[event] ?? 0) * exchange;
       const severity = severityOfRow(table, row);
       groundUp += rate * severity.mean;
+      const law = severity.kind === 'beta' ? betaLaw(severity.a, severity.b) : undefined;
       const known = new Map<number, number>();
       const limited = (d: number): number => {
         const before = known.get(d);
         if (before !== undefined) return before;
-        const value = limitedMean(severity, d);
+        const value = limitedMean(severity, d, law);
         known.set(d, value);
         return value;
       };
