@@ -7,6 +7,8 @@ import { machineInWords, median, run, say } from './machine';
 import { largestDifference, largestErrors, ourKernel, ours, oursExported, oursOnThreads, theirs, type Ours, type Theirs } from './measured';
 
 const ROUNDS = 3;
+/** Debian's, which has NumPy and SciPy; another may come first on the path. */
+const PYTHON = '/usr/bin/python3';
 const AGREEMENT: CaseSize = { ...WHOLE, states: 200_000 };
 
 const ratio = (value: number): string => `${value.toFixed(2)}×`;
@@ -24,7 +26,7 @@ function once<T>(shape: z.ZodType<T>, what: string, { events, states, layers }: 
 }
 
 function compared(script: 'plain' | 'best', folder: string, comparators: string, more: readonly string[] = []): Theirs {
-  return theirs.parse(JSON.parse(run('python3', [join(comparators, `${script}.py`), folder, ...more])));
+  return theirs.parse(JSON.parse(run(PYTHON, [join(comparators, `${script}.py`), folder, ...more])));
 }
 
 /** One thread each, in turns, so that what else the machine does hits all alike. */

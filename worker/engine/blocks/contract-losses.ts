@@ -8,7 +8,7 @@ import type { Scratch } from './scratch';
 export function drawLosses(scratch: Scratch, contract: PreparedContract, laws: Laws, block: number): number {
   const { occurrences } = scratch;
   scratch.losses.fill(0, 0, occurrences.count);
-  for (const table of contract.tables) addLosses(scratch.losses, table, laws, occurrences, block);
+  for (const table of contract.tables) addLosses(scratch.losses, scratch.draws, table, laws, occurrences, block);
   const { losses, event, place } = scratch;
   const { eventStart } = occurrences;
   let count = 0;

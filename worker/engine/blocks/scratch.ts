@@ -1,4 +1,5 @@
 import { PaidYears } from '../layers/each-year';
+import { Draws } from '../losses/draw';
 import { BLOCK_STATES } from '../model/inputs';
 import { Occurrences } from '../random/occurrences';
 
@@ -9,6 +10,7 @@ export class Scratch {
   event = new Uint32Array(0);
   place = new Uint32Array(0);
   order = new Uint32Array(0);
+  readonly draws = new Draws();
   readonly years = new PaidYears(BLOCK_STATES);
   readonly starts = new Uint32Array(BLOCK_STATES + 1);
 

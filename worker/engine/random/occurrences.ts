@@ -1,5 +1,5 @@
 import { ln } from '../math/ln';
-import { normalQuantile } from '../math/normal';
+import { normalQuantiles } from '../math/normal';
 import { BLOCK_STATES, type Catalogue } from '../model/inputs';
 import { gammaFactor } from './gamma-factor';
 import { PURPOSE, streamKey } from './keys';
@@ -124,7 +124,7 @@ function drawEvent(out: Occurrences, words: Uint32Array, rate: number, seasonDay
     out.state[at] = state;
     out.ordinal[at] = ordinal;
     out.day[at] = sinceInception < 0 ? sinceInception + DAYS : sinceInception;
-    out.score[at] = normalQuantile(uniform52(words[2] ?? 0, words[3] ?? 0));
+    out.score[at] = uniform52(words[2] ?? 0, words[3] ?? 0);
     out.count = at + 1;
   }
 }
@@ -158,4 +158,5 @@ export function drawOccurrences(out: Occurrences, catalogues: readonly KeyedCata
     }
   }
   out.eventStart[out.eventStart.length - 1] = out.count;
+  normalQuantiles(out.score, out.count);
 }
