@@ -1,7 +1,6 @@
 import { closeSync, mkdirSync, openSync, writeSync } from 'node:fs';
 import { join } from 'node:path';
 import { drawLosses, pickLosses } from '../../worker/engine/blocks/contract-losses';
-import { Scratch } from '../../worker/engine/blocks/scratch';
 import { openWorkspace } from '../../worker/engine';
 import { WAVES, perform } from '../../worker/engine/run/tasks';
 import { BLOCK_STATES, type ValuationInputs } from '../../worker/engine/model/inputs';
@@ -24,7 +23,7 @@ export function exportOccurrences(folder: string, inputs: ValuationInputs): void
     const file = files[name];
     if (file !== undefined) writeSync(file, new Uint8Array(column.buffer, column.byteOffset, column.byteLength));
   };
-  const scratch = new Scratch(prepared.events);
+  const scratch = workspace.scratch;
   const { occurrences } = scratch;
   for (let block = 0; block < prepared.blocks; block += 1) {
     const states = statesOfBlock(inputs.grid.states, block);

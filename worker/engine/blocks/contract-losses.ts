@@ -25,9 +25,9 @@ export function drawLosses(scratch: Scratch, contract: PreparedContract, laws: L
   return count;
 }
 
-/** Copies the listed losses in order of state and day; of one day, in the order of their draw. */
+/** Copies the listed losses in order of state and day; of one day, by their events' ranks and then in the order of their draw. */
 export function pickLosses(into: BlockLosses, scratch: Scratch, states: number): void {
-  const { occurrences, losses, event, place, order, starts } = scratch;
+  const { occurrences, losses, event, place, order, starts, rank } = scratch;
   const { state, day } = occurrences;
   const { count } = into;
   starts.fill(0);
@@ -44,8 +44,12 @@ export function pickLosses(into: BlockLosses, scratch: Scratch, states: number):
     let at = ends[s] ?? 0;
     ends[s] = at + 1;
     const own = day[i] ?? 0;
-    while (at > first && (day[place[order[at - 1] ?? 0] ?? 0] ?? 0) > own) {
-      order[at] = order[at - 1] ?? 0;
+    const ownRank = rank[event[n] ?? 0] ?? 0;
+    while (at > first) {
+      const other = order[at - 1] ?? 0;
+      const otherDay = day[place[other] ?? 0] ?? 0;
+      if (otherDay < own || (otherDay === own && (rank[event[other] ?? 0] ?? 0) <= ownRank)) break;
+      order[at] = other;
       at -= 1;
     }
     order[at] = n;

@@ -14,8 +14,12 @@ export class Scratch {
   readonly years = new PaidYears(BLOCK_STATES);
   readonly starts = new Uint32Array(BLOCK_STATES + 1);
 
-  constructor(events: number) {
-    this.occurrences = new Occurrences(events);
+  /**
+   * @param rank of each event, counted through all catalogues: which of two on the same day comes first, by their names and
+   *   not by where they stand in their files
+   */
+  constructor(readonly rank: Uint32Array) {
+    this.occurrences = new Occurrences(rank.length);
   }
 
   /** Room for a figure or two of each occurrence drawn. */

@@ -62,6 +62,8 @@ export interface HousePart {
   /** Σ (u′ − u′ of a loss-free state)², about which the scatter is summed without cancellation. */
   readonly shiftedSquares: number;
   readonly onFloor: number;
+  /** States at or below the floor. */
+  readonly floored: number;
   readonly near: readonly number[];
   readonly common: CommonMoments;
 }
@@ -86,6 +88,8 @@ export function risklessRateOf(prepared: Prepared, bookLoss: Float64Array): numb
   });
 }
 
+const LEAST_SQUARES = 1e-200;
+
 function nearBelowOf(floor: number): number {
   return Math.max(1.25 * floor, 0.5);
 }
@@ -100,7 +104,7 @@ export function housePart(prepared: Prepared, columns: { bookLoss: Float64Array;
   const nearBelow = nearBelowOf(basis.floor);
   const common = noMoments();
   const near: number[] = [];
-  let [slopeSum, slopeSquares, shiftedSquares, onFloor] = [0, 0, 0, 0];
+  let [slopeSum, slopeSquares, shiftedSquares, onFloor, floored] = [0, 0, 0, 0, 0];
   const from = index * BLOCK_STATES;
   const to = Math.min(from + BLOCK_STATES, bookLoss.length);
   for (let s = from; s < to; s += 1) {
@@ -112,32 +116,40 @@ export function housePart(prepared: Prepared, columns: { bookLoss: Float64Array;
     slopeSum += u;
     slopeSquares += u * u;
     shiftedSquares += (u - freeSlope) * (u - freeSlope);
-    if (k <= basis.floor) onFloor += u;
+    if (k <= basis.floor) {
+      onFloor += u;
+      floored += 1;
+    }
     if (k < nearBelow) near.push(s);
     else addState(common, k, u);
   }
-  return { slopeSum, slopeSquares, shiftedSquares, onFloor, near, common };
+  return { slopeSum, slopeSquares, shiftedSquares, onFloor, floored, near, common };
 }
 
 /**
  * Joins the blocks' parts, in order, to the house: m = β·max(k, φ)^(−γ). Anchored, β makes a sure unit cost
  * 1/(1 + riskless rate); stated, β is given. Price is the payoff weighted so: J. H. Cochrane, Asset Pricing (2005), chapter 1.
- * @throws EngineInputError where every state is at or below the floor
+ * @throws EngineInputError where every state is at or below the floor, or where u′ is too small for its square to be a number
  */
 export function houseOf(prepared: Prepared, columns: { capital: Float64Array; slope: Float64Array }, parts: readonly HousePart[], risklessRate: number): House {
   const { basis, grid } = prepared.inputs;
   const { states } = grid;
-  let [slopeSum, slopeSquares, shiftedSquares, onFloor] = [0, 0, 0, 0];
+  let [slopeSum, slopeSquares, shiftedSquares, onFloor, floored] = [0, 0, 0, 0, 0];
   let common = noMoments();
   for (const part of parts) {
     slopeSum += part.slopeSum;
     slopeSquares += part.slopeSquares;
     shiftedSquares += part.shiftedSquares;
     onFloor += part.onFloor;
+    floored += part.floored;
     common = combined(common, part.common, 1);
   }
-  if (onFloor === slopeSum && basis.riskAversion > 0) {
+  if (floored === states && basis.riskAversion > 0) {
     throw new EngineInputError('In every simulated year the book alone leaves the house at or below its floor: look at its capital, its floor and its book.');
+  }
+  // Squares of payoffs are still to be multiplied to these.
+  if (!(slopeSquares > LEAST_SQUARES)) {
+    throw new EngineInputError('The house has so much more capital at the end of every year than at its beginning that its hunger is beyond all numbers: look at its capital and at the premium of its book.');
   }
   const { discounting } = basis;
   const discount = discounting.mode === 'anchored' ? states / ((1 + risklessRate) * slopeSum) : discounting.discountFactor;

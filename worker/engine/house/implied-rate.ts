@@ -12,7 +12,8 @@ const MOST_STEPS = 100;
 export function impliedRate(excess: (rate: number) => number): number {
   let [a, b] = [LOWEST_RATE, HIGHEST_RATE];
   let [atA, atB] = [excess(a), excess(b)];
-  if (!(atA * atB <= 0)) throw new EngineInputError('The stated discount factor implies no sensible riskless rate on this book.');
+  // Alike at both ends, nothing tells one rate from another: logarithmic utility of an idle house.
+  if (!(atA * atB <= 0) || atA === atB) throw new EngineInputError('The stated discount factor implies no sensible riskless rate on this book.');
   let rate = a;
   for (let step = 0; step < MOST_STEPS; step += 1) {
     const next = b - (atB * (b - a)) / (atB - atA);

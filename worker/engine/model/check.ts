@@ -1,6 +1,11 @@
-import type { Catalogue, Grid, HouseBasis } from './inputs';
+import { exp } from '../math/exp';
+import { ln } from '../math/ln';
+import type { Catalogue, Grid, HouseBasis, LossTable } from './inputs';
 import type { InuringCover, LayerForm, LayerTerms } from './layer';
 import { demand } from './refusal';
+
+/** Largest marginal utility that sums of squares over states can hold. */
+const MOST_SLOPE = 1e100;
 
 const finite = (value: number, least: number): boolean => value >= least && value < Infinity;
 const share = (value: number): boolean => value >= 0 && value <= 1;
@@ -18,15 +23,30 @@ export function checkCatalogue(catalogue: Catalogue): void {
     for (const factor of catalogue.rateFactor) demand(factor > 0 && factor < Infinity, `A rate factor of ${name}`, factor, 'above 0 and finite');
   }
   for (const day of catalogue.seasonDay) demand(day !== day || (day >= 1 && day <= 366), `A season day of ${name}`, day, 'from 1 to 366');
+  const indices = [
+    { of: 'peril', index: catalogue.perilIndex, least: 0, names: catalogue.perils.length },
+    { of: 'region', index: catalogue.regionIndex, least: 0, names: catalogue.regions.length },
+    { of: 'group', index: catalogue.groupIndex, least: -1, names: catalogue.groups.length },
+  ];
+  for (const { of, index, least, names } of indices) {
+    for (const i of index) demand(i >= least && i < names, `The number of a ${of} of ${name}`, i, `from ${least} to ${names - 1}`);
+  }
   for (const group of catalogue.groups) {
     demand(group.varianceToMean > 1 && group.varianceToMean < Infinity, `The ratio of variance to mean of group ${group.name}`, group.varianceToMean, 'above 1');
   }
 }
 
+/** @throws EngineInputError where the columns of a loss table are not of one length */
+export function checkColumns({ lineage, eventIndex, meanLoss, sd, commonShare, exposedValue }: LossTable): void {
+  const columns = { 'mean losses': meanLoss, deviations: sd, 'common shares': commonShare, 'exposed values': exposedValue };
+  const rows = eventIndex.length;
+  for (const [column, { length }] of Object.entries(columns)) demand(length === rows, `The number of ${column} of Loss table ${lineage}`, length, `its number of rows, ${rows}`);
+}
+
 function checkForm(key: string, form: LayerForm, layer: LayerTerms): void {
   if (form.kind === 'excess') return;
   if (form.kind === 'nth event') {
-    demand(form.first >= 1 && Math.floor(form.first) === form.first, `Layer ${key}: the first event that counts`, form.first, 'a whole number from 1');
+    demand(finite(form.first, 1) && Math.floor(form.first) === form.first, `Layer ${key}: the first event that counts`, form.first, 'a whole number from 1');
     demand(finite(form.qualifying, 0), `Layer ${key}: the qualifying threshold`, form.qualifying, '0 or more');
     return;
   }
@@ -69,6 +89,9 @@ export function checkBasis(basis: HouseBasis): void {
   demand(basis.capital > 0 && basis.capital < Infinity, 'The capital of the house', basis.capital, 'above 0');
   demand(finite(basis.riskAversion, 0), 'Risk aversion', basis.riskAversion, '0 or more');
   demand(basis.floor > 0 && basis.floor <= 1, 'The floor', basis.floor, 'above 0 and 1 at most');
+  // u′ at the floor, the most that any state's can be; its square is still to be multiplied by squared payoffs.
+  const most = exp(-basis.riskAversion * ln(basis.floor));
+  demand(most < MOST_SLOPE, 'The worth of money at the floor, floor^(−risk aversion),', most, `below ${MOST_SLOPE}`);
   const { discounting } = basis;
   if (discounting.mode === 'anchored') demand(discounting.risklessRate > -1 && discounting.risklessRate < Infinity, 'The riskless rate', discounting.risklessRate, 'above −1');
   else demand(discounting.discountFactor > 0 && discounting.discountFactor < Infinity, 'The discount factor', discounting.discountFactor, 'above 0');

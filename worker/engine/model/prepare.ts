@@ -2,7 +2,7 @@ import { kindOfRow, severityOfRow } from '../losses/laws';
 import { reachOfLayers } from '../layers/counting';
 import { streamKey } from '../random/keys';
 import { catalogueKeys, type KeyedCatalogue } from '../random/occurrences';
-import { checkBasis, checkCatalogue, checkDeductions, checkGrid, checkLayer } from './check';
+import { checkBasis, checkCatalogue, checkColumns, checkDeductions, checkGrid, checkLayer } from './check';
 import { BLOCK_STATES, type BookContract, type HouseBasis, type LossTable, type Programme, type ValuationInputs } from './inputs';
 import type { LayerTerms } from './layer';
 import { EngineInputError, demand } from './refusal';
@@ -57,6 +57,13 @@ export interface Prepared {
   readonly tabledRows: number;
 }
 
+/** Premium of a layer of the book; a layer being priced has none. */
+function premiumOf(layer: LayerTerms & { readonly premium?: number }): number {
+  const { key, premium = 0 } = layer;
+  demand(premium >= 0 && premium < Infinity, `Layer ${key}: the premium in the book`, premium, '0 or more');
+  return premium;
+}
+
 /** What is counted through the tables of a run while they are prepared. */
 class Numbering {
   readonly tables: PreparedTable[] = [];
@@ -75,6 +82,7 @@ class Numbering {
     if (home === undefined) throw new EngineInputError(`${name} rests on a catalogue that the run does not have.`);
     demand(table.toContractCurrency > 0 && table.toContractCurrency < Infinity, `The exchange rate of ${name}`, table.toContractCurrency, 'above 0');
     const n = table.eventIndex.length;
+    checkColumns(table);
     const events = home.catalogue.eventNames;
     const rowOfEvent = new Int32Array(events.length).fill(-1);
     const kind = new Uint8Array(n);
@@ -126,7 +134,7 @@ class Numbering {
     return {
       tables: tables.map((table) => this.table(table, everyLoss || summed ? -1 : reach)),
       layers,
-      premiums: layers.map((layer) => ('premium' in layer && typeof layer.premium === 'number' ? layer.premium : 0)),
+      premiums: layers.map(premiumOf),
       toHouseCurrency: contract.toHouseCurrency,
       reach,
     };

@@ -3,9 +3,11 @@ import { IdleStates } from '../house/idle-states';
 import { SmallGain } from '../house/small-gain';
 import { slopeAfter } from '../house/utility';
 import type { Estimate } from '../measures/sums';
+import { EngineInputError } from '../model/refusal';
 import { capitalEffect, type Deal } from './deal';
 
-const MOST_STEPS = 100;
+/** A step multiplies a lean year's capital by 1 + 1/γ at least: from a low floor and with much aversion hundreds are needed. */
+const MOST_STEPS = 5000;
 
 /** Σ [u(k + change) − u(k)] over all states, its derivative in the premium, and the sum of squared gains. */
 function totalGain(deal: Deal, house: House, idle: IdleStates, series: SmallGain, premium: number): { gain: number; slope: number; squares: number } {
@@ -40,6 +42,7 @@ function totalGain(deal: Deal, house: House, idle: IdleStates, series: SmallGain
  * E u(k + change) = E u(k). The gain is concave and rising in the premium, so Newton's method from the marginal premium,
  * where it is not above 0, comes up to the root without passing it.
  * Source: the principle of equivalent utility, N. L. Bowers et al., Actuarial Mathematics (1997), chapter 1.
+ * @throws EngineInputError where the line is so large that no premium is found
  */
 export function walkAwayPremium(deal: Deal, house: House, marginal: number): Estimate {
   const idle = new IdleStates(house, deal.paying.state);
@@ -50,7 +53,8 @@ export function walkAwayPremium(deal: Deal, house: House, marginal: number): Est
     const move = at.gain / at.slope;
     premium -= move;
     // Newton's error after a step is of the order of the step's square.
-    if (Math.abs(move) <= 1e-7 * Math.abs(premium) || step === MOST_STEPS) {
+    if (step === MOST_STEPS || !(at.slope > 0)) throw new EngineInputError(`Layer ${deal.layer.key}: no walk-away premium is found at its line, which is far beyond what the house can bear.`);
+    if (Math.abs(move) <= 1e-9 * Math.abs(premium)) {
       const spread = Math.sqrt(at.squares / (house.states - 1) / house.states);
       return { value: premium, standardError: (spread * house.states) / at.slope };
     }

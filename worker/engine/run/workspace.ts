@@ -67,7 +67,7 @@ export class Workspace {
 
   /** Of this thread alone. */
   get scratch(): Scratch {
-    this.ownScratch ??= new Scratch(this.prepared.events);
+    this.ownScratch ??= new Scratch(eventRanks(this.prepared));
     return this.ownScratch;
   }
 
@@ -133,4 +133,11 @@ export class Workspace {
     if (this.bins === null) throw new Error('the lean order is not known yet');
     return this.bins;
   }
+}
+
+/** A number of each event that hangs on its name alone. */
+export function eventRanks({ catalogues, events }: Pick<Prepared, 'catalogues' | 'events'>): Uint32Array {
+  const ranks = new Uint32Array(events);
+  for (const { keys, firstEvent } of catalogues) ranks.set(keys.event0, firstEvent);
+  return ranks;
 }
