@@ -1,3 +1,4 @@
+import type { ExactMeans } from '../measures/self-check';
 import { WAVES, type Found, type Task } from './tasks';
 import { valuationOf, type Curves, type Valuation } from './valuation';
 import type { Workspace } from './workspace';
@@ -41,14 +42,18 @@ export function* course(workspace: Workspace): Generator<Step, Valuation, readon
   yield* wave(workspace, WAVES.blocks(workspace));
   yield* wave(workspace, WAVES.rate());
   yield* wave(workspace, WAVES.house(workspace));
-  yield* wave(workspace, WAVES.lean());
-  return yield* layersAgain(workspace);
+  // The exact means need nothing of the lean order: they keep other threads busy meanwhile.
+  const found = yield* wave(workspace, [...WAVES.lean(), ...WAVES.check(workspace)]);
+  return yield* layersAgain(workspace, only(found, 'check').map(({ means }) => means));
 }
 
-/** The part of a run that values its layers on a house that is known. */
-export function* layersAgain(workspace: Workspace): Generator<Step, Valuation, readonly Found[]> {
+/**
+ * The part of a run that values its layers on a house that is known.
+ * @param known exact means of these layers; null: still to be found
+ */
+export function* layersAgain(workspace: Workspace, known: readonly ExactMeans[] | null = null): Generator<Step, Valuation, readonly Found[]> {
   yield* wave(workspace, WAVES.layers(workspace));
-  const whole = yield* wave(workspace, [...WAVES.programme(workspace), ...(workspace.curves === null ? WAVES.curves() : [])]);
+  const whole = yield* wave(workspace, [...WAVES.programme(), ...(workspace.curves === null ? WAVES.curves() : []), ...(known === null ? WAVES.check(workspace) : [])]);
   const [programme] = only(whole, 'programme');
   if (programme === undefined) throw new Error('the programme of the run was not valued');
   workspace.curves ??= curvesOf(whole);
@@ -57,7 +62,7 @@ export function* layersAgain(workspace: Workspace): Generator<Step, Valuation, r
     ...workspace.curves,
     programme: programme.programme,
     tailAfter: only(after, 'tail')[0]?.points ?? [],
-    means: only(whole, 'check').map(({ means }) => means),
+    means: known ?? only(whole, 'check').map(({ means }) => means),
   });
 }
 

@@ -91,7 +91,8 @@ export const WAVES = {
   house: (workspace: Workspace): Task[] => Array.from({ length: workspace.prepared.blocks }, (_unused, index): Task => ({ kind: 'house', index })),
   lean: (): Task[] => [{ kind: 'lean' }],
   layers: (workspace: Workspace): Task[] => workspace.prepared.programme.layers.map((_layer, index): Task => ({ kind: 'layer', index })),
-  programme: (workspace: Workspace): Task[] => [{ kind: 'programme' }, ...chunks(0, programmeRows(workspace)).map((chunk): Task => ({ kind: 'check', ...chunk }))],
+  programme: (): Task[] => [{ kind: 'programme' }],
+  check: (workspace: Workspace): Task[] => chunks(0, programmeRows(workspace)).map((chunk): Task => ({ kind: 'check', ...chunk })),
   curves: (): Task[] => [{ kind: 'occurrence curve' }, { kind: 'aggregate curve' }, { kind: 'house tail before' }],
   after: (premiums: readonly number[]): Task[] => [{ kind: 'house tail after', premiums }],
 } as const;

@@ -1,5 +1,5 @@
-import { ComponentFixture, TestBed } from '@angular/core/testing';
-import type { ExplainedYear, LayerResult } from '@leanyear/contract/runs';
+import { type ComponentFixture, TestBed } from '@angular/core/testing';
+import type { ExplainedYear } from '@leanyear/contract/runs';
 import { TellingYears } from './telling-years';
 
 const year = (state: number, event: string): ExplainedYear => ({
@@ -17,7 +17,7 @@ const year = (state: number, event: string): ExplainedYear => ({
 describe('TellingYears', () => {
   const opened = (tellingYears: readonly ExplainedYear[]): ComponentFixture<TellingYears> => {
     const fixture = TestBed.createComponent(TellingYears);
-    fixture.componentRef.setInput('layer', { key: 'a', tellingYears } as unknown as LayerResult);
+    fixture.componentRef.setInput('layer', { key: 'a', tellingYears });
     fixture.componentRef.setInput('states', 500_000);
     fixture.componentRef.setInput('currency', 'EUR');
     fixture.componentRef.setInput('houseCurrency', 'EUR');
