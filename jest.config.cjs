@@ -13,8 +13,11 @@ module.exports = {
   projects: [
     // What is published is held against the functions alone: it needs no servers.
     server('unit', ['<rootDir>/{api,db,worker,fixtures}/**/*.spec.ts', PUBLISHED]),
-    server('server', ['<rootDir>/test/{accuracy,api,db,worker,reference}/**/*.spec.ts'], {
+    server('server', ['<rootDir>/test/{api,db,worker,reference}/**/*.spec.ts'], {
       testPathIgnorePatterns: ['/node_modules/', '<rootDir>/test/reference/published/'],
+      setupFiles: ['<rootDir>/test/support/require-servers.ts'],
+    }),
+    server('accuracy', ['<rootDir>/test/accuracy/**/*.spec.ts'], {
       setupFiles: ['<rootDir>/test/support/require-servers.ts'],
     }),
     server('faults', ['<rootDir>/test/faults/**/*.spec.ts'], {

@@ -35,6 +35,8 @@ export const STEPS: readonly TestStep[] = [
   jestProject('unit'),
   jestProject('ui'),
   jestProject('server', { servers: true }),
+  // Its drawing takes every core.
+  jestProject('accuracy', { servers: true, alone: true }),
   jestProject('faults', { servers: true, alone: true }),
   jestProject('e2e', { servers: true, screens: true, alone: true }),
 ];

@@ -8,7 +8,8 @@ const MEAN = 100;
 
 /** From near-certain to extremely skewed; an exposed value of NaN makes the loss lognormal. */
 const LAWS = [
-  ...[0.001, 0.05, 0.3, 1, 3, 9.9].map((variation) => ({ variation, exposed: MEAN * 100 })),
+  { variation: 0.001, exposed: MEAN * 5 },
+  ...[0.05, 0.3, 1, 3, 9.9].map((variation) => ({ variation, exposed: MEAN * 100 })),
   ...[0.01, 0.5, 0.99].map((variation) => ({ variation, exposed: MEAN * 2 })),
   { variation: 30, exposed: MEAN * 1000 },
   { variation: 1.5, exposed: MEAN * 100_000 },
@@ -37,8 +38,9 @@ describe('the sampler at ten million draws a law', () => {
   it('has every layer’s exact mean recovery within 4 standard errors', async () => {
     const cases = LAWS.map(({ variation, exposed }): DrawCase => ({ mean: MEAN, sd: variation * MEAN, exposed, layers: layersOf(variation), draws: DRAWS }));
     const code = bundled('draw-means.ts', 'node');
-    const half = Math.ceil(cases.length / 2);
-    const drawn = (await Promise.all([drawnBy(code, cases.slice(0, half)), drawnBy(code, cases.slice(half))])).flat();
+    // Laws without a table take twenty times as long: each thread takes every other law.
+    const [even = [], odd = []] = await Promise.all([0, 1].map((turn) => drawnBy(code, cases.filter((_one, c) => c % 2 === turn))));
+    const drawn = cases.map((_one, c) => (c % 2 === 0 ? even : odd)[Math.floor(c / 2)]);
     const compared = cases.flatMap(({ mean, sd, exposed, layers }, c) =>
       layers.map(({ limit, attachment }, l) => {
         const severity = severityOf(mean, sd, exposed);

@@ -226,7 +226,7 @@ describe('data in', () => {
     expect(Date.now() - began).toBeLessThan(15_000);
     const last = await actuary.as('get', `/catalogue-versions/${version.id}/events?offset=99999`).expect(200);
     expect(last.body).toMatchObject({ items: [{ event: 'E "99999"', ratePerYear: 1e-4 }] });
-  });
+  }, 30_000);
 
   it('numbers versions one after the other when several come at once', async () => {
     const busy = await catalogueNamed('Busy');
