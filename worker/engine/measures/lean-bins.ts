@@ -1,6 +1,7 @@
 import { exp } from '../math/exp';
 import type { House } from '../house/house';
 import { ln } from '../math/ln';
+import { BLOCK_STATES } from '../model/inputs';
 import { selectRanks } from './select';
 
 const BINS_A_DECADE = 12;
@@ -86,6 +87,12 @@ function partsOf(capital: Float64Array, ends: readonly number[], out: Uint8Array
   }
 }
 
+/** Adds sums to their totals and begins them anew. */
+function moveInto(totals: Float64Array, sums: Float64Array): void {
+  for (let i = 0; i < sums.length; i += 1) totals[i] = (totals[i] ?? 0) + (sums[i] ?? 0);
+  sums.fill(0);
+}
+
 /** Sorts the states into tenths and into the bins of the lens, leanest first; writes their numbers, one a state. */
 export function leanBins(house: House, decile: Uint8Array, lensBin: Uint8Array): LeanBins {
   const { states, capital, slope, slopeSum } = house;
@@ -99,16 +106,26 @@ export function leanBins(house: House, decile: Uint8Array, lensBin: Uint8Array):
   const hunger = new Float64Array(edges.length);
   const lensCapital = new Float64Array(edges.length);
   const tenthCapital = new Float64Array(DECILES);
-  for (let s = 0; s < states; s += 1) {
-    const part = lensBin[s] ?? 0;
-    const b = binOf[part] ?? 0;
-    const d = tenthOf[part] ?? 0;
-    const k = capital[s] ?? 0;
-    lensBin[s] = b;
-    decile[s] = d;
-    hunger[b] = (hunger[b] ?? 0) + (slope[s] ?? 0);
-    lensCapital[b] = (lensCapital[b] ?? 0) + k;
-    tenthCapital[d] = (tenthCapital[d] ?? 0) + k;
+  const blockHunger = new Float64Array(edges.length);
+  const blockLensCapital = new Float64Array(edges.length);
+  const blockTenthCapital = new Float64Array(DECILES);
+  // Within each block and the blocks' sums in order: ten million states in one go would lose digits.
+  for (let from = 0; from < states; from += BLOCK_STATES) {
+    const to = Math.min(from + BLOCK_STATES, states);
+    for (let s = from; s < to; s += 1) {
+      const part = lensBin[s] ?? 0;
+      const b = binOf[part] ?? 0;
+      const d = tenthOf[part] ?? 0;
+      const k = capital[s] ?? 0;
+      lensBin[s] = b;
+      decile[s] = d;
+      blockHunger[b] = (blockHunger[b] ?? 0) + (slope[s] ?? 0);
+      blockLensCapital[b] = (blockLensCapital[b] ?? 0) + k;
+      blockTenthCapital[d] = (blockTenthCapital[d] ?? 0) + k;
+    }
+    moveInto(hunger, blockHunger);
+    moveInto(lensCapital, blockLensCapital);
+    moveInto(tenthCapital, blockTenthCapital);
   }
   const meanSlope = slopeSum / states;
   return {
