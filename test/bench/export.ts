@@ -28,7 +28,7 @@ export function exportOccurrences(folder: string, inputs: ValuationInputs): void
   for (let block = 0; block < prepared.blocks; block += 1) {
     const states = statesOfBlock(inputs.grid.states, block);
     drawOccurrences(occurrences, prepared.catalogues, block, states, inputs.programme.inceptionDay);
-    scratch.fit();
+    scratch.makeRoom();
     const { count } = occurrences;
     const losses = [prepared.programme, contract].map((of) => {
       drawLosses(scratch, of, memory.laws, block);

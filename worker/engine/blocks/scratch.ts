@@ -23,7 +23,7 @@ export class Scratch {
   }
 
   /** Room for a figure or two of each occurrence drawn. */
-  fit(): void {
+  makeRoom(): void {
     const { count } = this.occurrences;
     if (this.losses.length >= count) return;
     const room = Math.max(count, 65_536) * 2;

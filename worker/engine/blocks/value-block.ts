@@ -39,7 +39,7 @@ export function valueBlock(prepared: Prepared, laws: Laws, index: number, alloca
   const states = statesOfBlock(grid.states, index);
   const { occurrences } = scratch;
   drawOccurrences(occurrences, prepared.catalogues, index, states, terms.inceptionDay);
-  scratch.fit();
+  scratch.makeRoom();
   const bookLoss = new Float64Array(states);
   for (const contract of prepared.book) {
     const losses = emptyLosses(drawLosses(scratch, contract, laws, index));
